@@ -1,0 +1,55 @@
+import type { Tick } from './figureAxis'
+
+/** Marks of a time axis: lines across the figure, and words under it. Times in the axis's own unit. */
+export interface TimeMarks {
+  readonly lines: readonly number[]
+  readonly words: readonly Tick[]
+}
+
+const HOURS_A_DAY = 24
+
+/**
+ * Days where the axis spans two or more of them, each named at its middle as often as there is room; else round
+ * numbers of the axis's own unit.
+ */
+export function timeMarks(axis: { until: number; unit: string; hoursPerUnit: number; width: number }): TimeMarks {
+  const hours = axis.until * axis.hoursPerUnit
+  const days = hours / HOURS_A_DAY
+  if (days < 2) return roundMarks(axis)
+  return days <= 60 ? dayMarks(axis, days) : weekMarks(axis, days)
+}
+
+function dayMarks(axis: { hoursPerUnit: number; width: number }, days: number): TimeMarks {
+  const roomy = axis.width / days > 44
+  const every = roomy ? 1 : Math.ceil((days * 22) / axis.width)
+  const unitsADay = HOURS_A_DAY / axis.hoursPerUnit
+  const whole = Math.floor(days + 1e-9)
+  const lines = Array.from({ length: whole + 1 }, (_, day) => day * unitsADay)
+  const words: Tick[] = []
+  for (let day = 1; day <= whole; day += every) {
+    words.push({ at: (day - 0.5) * unitsADay, label: roomy || day === 1 ? `day ${day}` : `${day}` })
+  }
+  return { lines, words }
+}
+
+function weekMarks(axis: { hoursPerUnit: number; width: number }, days: number): TimeMarks {
+  const weeks = days / 7
+  const every = Math.max(1, Math.ceil((weeks * 50) / axis.width))
+  const unitsAWeek = (7 * HOURS_A_DAY) / axis.hoursPerUnit
+  const lines: number[] = []
+  const words: Tick[] = []
+  for (let week = 0; week <= weeks + 1e-9; week += every) {
+    lines.push(week * unitsAWeek)
+    words.push({ at: week * unitsAWeek, label: `week ${week}` })
+  }
+  return { lines, words }
+}
+
+function roundMarks(axis: { until: number; unit: string; hoursPerUnit: number; width: number }): TimeMarks {
+  const least = axis.until / Math.max(2, axis.width / 70)
+  const steps = axis.unit === 'h' ? [0.25, 0.5, 1, 2, 3, 4, 6, 12, 24] : [1, 2, 5, 10, 15, 30, 60, 120, 240]
+  const step = steps.find((candidate) => candidate >= least) ?? least
+  const count = Math.floor(axis.until / step + 1e-9)
+  const lines = Array.from({ length: count + 1 }, (_, k) => k * step)
+  return { lines, words: lines.map((at) => ({ at, label: `${at} ${axis.unit}` })) }
+}
