@@ -1,6 +1,7 @@
 import type { ReadonlyVector } from '../numerics/vector'
 import type { Hours, MilligramHoursPerLitre, Milligrams, MilligramsPerLitre } from '../units/canonical'
 import type { Segment } from './segment'
+import type { BodyState } from './state'
 
 /** A concentration that can be followed: the observed one, an effect site's or an observation's, by index in the model. */
 export type Signal =
@@ -11,6 +12,8 @@ export type Signal =
 /** The course of one regimen through time: gapless pieces from 0 to `end`, one a segment. */
 export interface Trajectory {
   readonly end: Hours
+  /** At time 0, before anything given at that time. */
+  readonly initial: BodyState
   readonly pieces: readonly Piece[]
 }
 
@@ -30,6 +33,8 @@ export interface Piece {
   slope(signal: Signal, offset: Hours): number
   /** Area under the signal since the segment's start. */
   area(signal: Signal, offset: Hours): MilligramHoursPerLitre
+  /** Area under the signal between two offsets, with the digits of that area and not of the whole. */
+  areaBetween(signal: Signal, from: Hours, to: Hours): MilligramHoursPerLitre
   /** Amount that left the body since the segment's start. */
   eliminated(offset: Hours): Milligrams
 }
