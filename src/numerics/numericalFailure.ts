@@ -6,6 +6,10 @@ export type NumericalFailureCode =
   | 'no-way-out'
   /** The function has the same sign at both ends of the bracket. */
   | 'no-sign-change'
+  /** An iteration used up its rounds. */
+  | 'no-convergence'
+  /** A function that was handed in yields NaN. */
+  | 'not-a-number'
 
 /** A computation on valid input that cannot give a number: thrown by `numerics`, caught where a run is put together. */
 export class NumericalFailure extends Error {

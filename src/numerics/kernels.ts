@@ -1,0 +1,254 @@
+/**
+ * Products with one small square matrix B, row-major, n x n. The sizes 2 to 5 are written out: B is held in local
+ * variables and the loops over rows or columns touch nothing but them. Larger ones are plain loops, which are faster
+ * than a written-out n = 8, whose 64 values fit no registers.
+ */
+export interface Kernel {
+  /** `count` rows A, one after another: out = A B. `out` must be neither. */
+  readonly rows: (a: Float64Array, count: number, b: Float64Array, out: Float64Array) => void
+  /** `count` columns C, one after another: out = B C. `out` must be neither. */
+  readonly columns: (b: Float64Array, c: Float64Array, count: number, out: Float64Array) => void
+}
+
+/** The products for n x n matrices. */
+export function kernelFor(n: number): Kernel {
+  switch (n) {
+    case 2:
+      return { rows: rows2, columns: columns2 }
+    case 3:
+      return { rows: rows3, columns: columns3 }
+    case 4:
+      return { rows: rows4, columns: columns4 }
+    case 5:
+      return { rows: rows5, columns: columns5 }
+    default:
+      return {
+        rows: (a, count, b, out) => rowsAny(n, a, count, b, out),
+        columns: (b, c, count, out) => columnsAny(n, b, c, count, out)
+      }
+  }
+}
+
+function rowsAny(n: number, a: Float64Array, count: number, b: Float64Array, out: Float64Array): void {
+  for (let p = 0; p < n * count; p += n) {
+    for (let j = 0; j < n; j++) {
+      let sum = 0
+      for (let k = 0; k < n; k++) sum += a[p + k] * b[k * n + j]
+      out[p + j] = sum
+    }
+  }
+}
+
+function columnsAny(n: number, b: Float64Array, c: Float64Array, count: number, out: Float64Array): void {
+  for (let p = 0; p < n * count; p += n) {
+    for (let i = 0; i < n; i++) {
+      let sum = 0
+      for (let k = 0; k < n; k++) sum += b[i * n + k] * c[p + k]
+      out[p + i] = sum
+    }
+  }
+}
+
+function rows2(a: Float64Array, count: number, b: Float64Array, out: Float64Array): void {
+  const b00 = b[0],
+    b01 = b[1]
+  const b10 = b[2],
+    b11 = b[3]
+  for (let p = 0; p < 2 * count; p += 2) {
+    const a0 = a[p],
+      a1 = a[p + 1]
+    out[p] = a0 * b00 + a1 * b10
+    out[p + 1] = a0 * b01 + a1 * b11
+  }
+}
+
+function rows3(a: Float64Array, count: number, b: Float64Array, out: Float64Array): void {
+  const b00 = b[0],
+    b01 = b[1],
+    b02 = b[2]
+  const b10 = b[3],
+    b11 = b[4],
+    b12 = b[5]
+  const b20 = b[6],
+    b21 = b[7],
+    b22 = b[8]
+  for (let p = 0; p < 3 * count; p += 3) {
+    const a0 = a[p],
+      a1 = a[p + 1],
+      a2 = a[p + 2]
+    out[p] = a0 * b00 + a1 * b10 + a2 * b20
+    out[p + 1] = a0 * b01 + a1 * b11 + a2 * b21
+    out[p + 2] = a0 * b02 + a1 * b12 + a2 * b22
+  }
+}
+
+function rows4(a: Float64Array, count: number, b: Float64Array, out: Float64Array): void {
+  const b00 = b[0],
+    b01 = b[1],
+    b02 = b[2],
+    b03 = b[3]
+  const b10 = b[4],
+    b11 = b[5],
+    b12 = b[6],
+    b13 = b[7]
+  const b20 = b[8],
+    b21 = b[9],
+    b22 = b[10],
+    b23 = b[11]
+  const b30 = b[12],
+    b31 = b[13],
+    b32 = b[14],
+    b33 = b[15]
+  for (let p = 0; p < 4 * count; p += 4) {
+    const a0 = a[p],
+      a1 = a[p + 1],
+      a2 = a[p + 2],
+      a3 = a[p + 3]
+    out[p] = a0 * b00 + a1 * b10 + a2 * b20 + a3 * b30
+    out[p + 1] = a0 * b01 + a1 * b11 + a2 * b21 + a3 * b31
+    out[p + 2] = a0 * b02 + a1 * b12 + a2 * b22 + a3 * b32
+    out[p + 3] = a0 * b03 + a1 * b13 + a2 * b23 + a3 * b33
+  }
+}
+
+function rows5(a: Float64Array, count: number, b: Float64Array, out: Float64Array): void {
+  const b00 = b[0],
+    b01 = b[1],
+    b02 = b[2],
+    b03 = b[3],
+    b04 = b[4]
+  const b10 = b[5],
+    b11 = b[6],
+    b12 = b[7],
+    b13 = b[8],
+    b14 = b[9]
+  const b20 = b[10],
+    b21 = b[11],
+    b22 = b[12],
+    b23 = b[13],
+    b24 = b[14]
+  const b30 = b[15],
+    b31 = b[16],
+    b32 = b[17],
+    b33 = b[18],
+    b34 = b[19]
+  const b40 = b[20],
+    b41 = b[21],
+    b42 = b[22],
+    b43 = b[23],
+    b44 = b[24]
+  for (let p = 0; p < 5 * count; p += 5) {
+    const a0 = a[p],
+      a1 = a[p + 1],
+      a2 = a[p + 2],
+      a3 = a[p + 3],
+      a4 = a[p + 4]
+    out[p] = a0 * b00 + a1 * b10 + a2 * b20 + a3 * b30 + a4 * b40
+    out[p + 1] = a0 * b01 + a1 * b11 + a2 * b21 + a3 * b31 + a4 * b41
+    out[p + 2] = a0 * b02 + a1 * b12 + a2 * b22 + a3 * b32 + a4 * b42
+    out[p + 3] = a0 * b03 + a1 * b13 + a2 * b23 + a3 * b33 + a4 * b43
+    out[p + 4] = a0 * b04 + a1 * b14 + a2 * b24 + a3 * b34 + a4 * b44
+  }
+}
+
+function columns2(b: Float64Array, c: Float64Array, count: number, out: Float64Array): void {
+  const b00 = b[0],
+    b01 = b[1]
+  const b10 = b[2],
+    b11 = b[3]
+  for (let p = 0; p < 2 * count; p += 2) {
+    const c0 = c[p],
+      c1 = c[p + 1]
+    out[p] = b00 * c0 + b01 * c1
+    out[p + 1] = b10 * c0 + b11 * c1
+  }
+}
+
+function columns3(b: Float64Array, c: Float64Array, count: number, out: Float64Array): void {
+  const b00 = b[0],
+    b01 = b[1],
+    b02 = b[2]
+  const b10 = b[3],
+    b11 = b[4],
+    b12 = b[5]
+  const b20 = b[6],
+    b21 = b[7],
+    b22 = b[8]
+  for (let p = 0; p < 3 * count; p += 3) {
+    const c0 = c[p],
+      c1 = c[p + 1],
+      c2 = c[p + 2]
+    out[p] = b00 * c0 + b01 * c1 + b02 * c2
+    out[p + 1] = b10 * c0 + b11 * c1 + b12 * c2
+    out[p + 2] = b20 * c0 + b21 * c1 + b22 * c2
+  }
+}
+
+function columns4(b: Float64Array, c: Float64Array, count: number, out: Float64Array): void {
+  const b00 = b[0],
+    b01 = b[1],
+    b02 = b[2],
+    b03 = b[3]
+  const b10 = b[4],
+    b11 = b[5],
+    b12 = b[6],
+    b13 = b[7]
+  const b20 = b[8],
+    b21 = b[9],
+    b22 = b[10],
+    b23 = b[11]
+  const b30 = b[12],
+    b31 = b[13],
+    b32 = b[14],
+    b33 = b[15]
+  for (let p = 0; p < 4 * count; p += 4) {
+    const c0 = c[p],
+      c1 = c[p + 1],
+      c2 = c[p + 2],
+      c3 = c[p + 3]
+    out[p] = b00 * c0 + b01 * c1 + b02 * c2 + b03 * c3
+    out[p + 1] = b10 * c0 + b11 * c1 + b12 * c2 + b13 * c3
+    out[p + 2] = b20 * c0 + b21 * c1 + b22 * c2 + b23 * c3
+    out[p + 3] = b30 * c0 + b31 * c1 + b32 * c2 + b33 * c3
+  }
+}
+
+function columns5(b: Float64Array, c: Float64Array, count: number, out: Float64Array): void {
+  const b00 = b[0],
+    b01 = b[1],
+    b02 = b[2],
+    b03 = b[3],
+    b04 = b[4]
+  const b10 = b[5],
+    b11 = b[6],
+    b12 = b[7],
+    b13 = b[8],
+    b14 = b[9]
+  const b20 = b[10],
+    b21 = b[11],
+    b22 = b[12],
+    b23 = b[13],
+    b24 = b[14]
+  const b30 = b[15],
+    b31 = b[16],
+    b32 = b[17],
+    b33 = b[18],
+    b34 = b[19]
+  const b40 = b[20],
+    b41 = b[21],
+    b42 = b[22],
+    b43 = b[23],
+    b44 = b[24]
+  for (let p = 0; p < 5 * count; p += 5) {
+    const c0 = c[p],
+      c1 = c[p + 1],
+      c2 = c[p + 2],
+      c3 = c[p + 3],
+      c4 = c[p + 4]
+    out[p] = b00 * c0 + b01 * c1 + b02 * c2 + b03 * c3 + b04 * c4
+    out[p + 1] = b10 * c0 + b11 * c1 + b12 * c2 + b13 * c3 + b14 * c4
+    out[p + 2] = b20 * c0 + b21 * c1 + b22 * c2 + b23 * c3 + b24 * c4
+    out[p + 3] = b30 * c0 + b31 * c1 + b32 * c2 + b33 * c3 + b34 * c4
+    out[p + 4] = b40 * c0 + b41 * c1 + b42 * c2 + b43 * c3 + b44 * c4
+  }
+}
