@@ -29,7 +29,7 @@ export type Shape =
       readonly text: string
       readonly look: string
     }
-  | { readonly kind: 'clipped'; readonly id: string; readonly box: Box; readonly shapes: readonly Shape[] }
+  | { readonly kind: 'clipped'; readonly box: Box; readonly shapes: readonly Shape[] }
 
 export interface Box {
   readonly x: number
@@ -64,10 +64,10 @@ export function svgElement(shape: Shape): SvgElement {
         text: shape.text
       }
     case 'clipped': {
+      // An inner image with its own view cuts what leaves it, and needs no id that two figures on a page could share.
       const { x, y, width, height } = shape.box
-      const clip = element('clipPath', { id: shape.id }, [element('rect', numbers({ x, y, width, height }))])
-      const inside = element('g', { 'clip-path': `url(#${shape.id})` }, shape.shapes.map(svgElement))
-      return element('g', {}, [clip, inside])
+      const viewBox = `${pixel(x)} ${pixel(y)} ${pixel(width)} ${pixel(height)}`
+      return element('svg', { ...numbers({ x, y, width, height }), viewBox }, shape.shapes.map(svgElement))
     }
   }
 }

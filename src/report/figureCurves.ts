@@ -38,7 +38,6 @@ export function curvesFigure(chart: ChartView, size: FigureSize): Figure {
     ...changeLines(chart, x, plot, height, rows),
     {
       kind: 'clipped',
-      id: 'plot-area',
       box: { ...plot, y: plot.y - 2, height: plot.height + 2 },
       shapes: chart.curves.map((curve) => ({
         kind: 'path',

@@ -13,13 +13,12 @@ export interface RowsAsked {
   readonly count: number
 }
 
-/** The tables that can be taken away as a file. */
+/** The tables that can be taken away as files. */
 export type Download = 'table' | 'exposure' | 'phases'
 
 export interface NamedFile {
   readonly name: string
-  readonly type: string
-  readonly bytes: Uint8Array<ArrayBuffer>
+  readonly content: Blob
 }
 
 /**
@@ -27,8 +26,8 @@ export interface NamedFile {
  * as the page shows it.
  */
 export interface PageWorker {
-  /** Validate a study file's bytes, compute it and lay the page out. */
-  open(bytes: Uint8Array): Promise<Outcome>
+  /** Validate a study file, compute it and lay the page out. */
+  open(file: Blob): Promise<Outcome>
   /** Rows of the concentration table as the screen shows them. */
   rows(asked: RowsAsked): Promise<readonly (readonly string[])[]>
   /** A table in full precision, as the command line writes it, and its metadata. */

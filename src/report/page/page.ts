@@ -9,8 +9,6 @@ export interface PageView {
   readonly title: string
   /** Program version and study hash: what makes the page reproducible. */
   readonly provenance: string
-  /** The standing caution. */
-  readonly caution: string
   /** Cautions that apply to this study; empty where none does. */
   readonly cautions: readonly string[]
   readonly regimens: readonly RegimenLabel[]

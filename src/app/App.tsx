@@ -1,0 +1,47 @@
+import { createEffect, onMount, Show } from 'solid-js'
+import { CautionLine } from './CautionLine'
+import { ConcentrationTable } from './ConcentrationTable'
+import { CurveCard } from './CurveCard'
+import { acceptDrops } from './drop'
+import { ExposureCard } from './ExposureCard'
+import { Header } from './Header'
+import { IssueList } from './IssueList'
+import { Note } from './Note'
+import { PhasesCard } from './PhasesCard'
+import { DEMONSTRATION, shippedStudy } from './shippedStudies'
+import type { StudyDesk } from './studyDesk'
+
+/** The one page: the note, the curve beside it, then exposure, phases and the table, over a caution that stays. */
+export function App(props: { desk: StudyDesk }) {
+  const desk = props.desk
+  onMount(() => {
+    acceptDrops(desk)
+    shippedStudy(DEMONSTRATION).then(desk.open, (failure: Error) =>
+      desk.refuse(`${DEMONSTRATION}.json`, failure.message)
+    )
+  })
+  createEffect(() => {
+    document.title = desk.page() === undefined ? 'Phasewise' : `${desk.page()?.title} · Phasewise`
+  })
+  return (
+    <>
+      <Header desk={desk} />
+      <main aria-busy={desk.busy()}>
+        <Show when={desk.refusal()}>{(refusal) => <IssueList refusal={refusal()} kept={desk.page()?.title} />}</Show>
+        <Show when={desk.page()} fallback={<p class="waiting">{desk.refusal() ? '' : 'Computing …'}</p>}>
+          {(page) => (
+            <div class="desk" classList={{ old: desk.refusal() !== undefined }}>
+              <Note page={page()} />
+              <CurveCard chart={page().chart} />
+              <ExposureCard desk={desk} grids={page().exposure} />
+              <PhasesCard desk={desk} phases={page().phases} />
+              <ConcentrationTable desk={desk} table={page().table} />
+              <footer class="provenance">{page().provenance}</footer>
+            </div>
+          )}
+        </Show>
+      </main>
+      <CautionLine count={desk.page()?.cautions.length ?? 0} />
+    </>
+  )
+}

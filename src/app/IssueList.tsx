@@ -1,0 +1,34 @@
+import { For, Show } from 'solid-js'
+import type { Refusal } from './studyDesk'
+
+/** Everything that is wrong with a file, each with its place, over the last good result. */
+export function IssueList(props: { refusal: Refusal; kept: string | undefined }) {
+  const count = () => props.refusal.issues.length
+  return (
+    <section class="issues" role="alert" aria-labelledby="issues-title">
+      <h2 id="issues-title">
+        {props.refusal.name} was not used: {count() === 1 ? '1 problem' : `${count()} problems`}
+      </h2>
+      <ol>
+        <For each={props.refusal.issues}>
+          {(issue) => (
+            <li>
+              <Show when={issue.path !== ''}>
+                <code>{issue.path}</code>{' '}
+              </Show>
+              {issue.message}
+            </li>
+          )}
+        </For>
+      </ol>
+      <Show when={props.kept}>
+        {(title) => (
+          <p class="quiet">
+            Below, in grey, stands the last study that could be computed: <b>{title()}</b>. It is not the file that you
+            opened.
+          </p>
+        )}
+      </Show>
+    </section>
+  )
+}

@@ -1,0 +1,95 @@
+import { For, Show } from 'solid-js'
+import type { PageView } from '../report/page/page'
+import { EstimatesTable } from './EstimatesTable'
+import { RegimenTag } from './RegimenTag'
+import { Words } from './Words'
+
+/** The consult note: patient, model, regimens and targets in words, then what was found. */
+export function Note(props: { page: PageView }) {
+  const note = () => props.page.note
+  return (
+    <article class="note" aria-label="Note">
+      <section class="finding" aria-labelledby="found">
+        <h2 id="found">Found</h2>
+        <For each={note().findings}>
+          {(sentence) => (
+            <p>
+              <Words prose={sentence} />
+            </p>
+          )}
+        </For>
+        <Show when={props.page.cautions.length > 0}>
+          <ul class="cautions" id="cautions" tabindex="-1" aria-label="Cautions that apply to this study">
+            <For each={props.page.cautions}>{(caution) => <li>{caution}</li>}</For>
+          </ul>
+        </Show>
+      </section>
+      <section aria-labelledby="patient">
+        <h2 id="patient">Patient</h2>
+        <For each={note().patient}>
+          {(sentence) => (
+            <p>
+              <Words prose={sentence} />
+            </p>
+          )}
+        </For>
+        <EstimatesTable estimates={note().estimates} />
+        <ul class="population">
+          <For each={note().population}>
+            {(line) => (
+              <li class={line.standing}>
+                <span class="chip">{STANDING[line.standing]}</span> {line.text}
+              </li>
+            )}
+          </For>
+        </ul>
+      </section>
+      <section aria-labelledby="model">
+        <h2 id="model">Model</h2>
+        <p>
+          <Words prose={note().model.sentence} />
+        </p>
+        <ul class="equations">
+          <For each={note().model.equations}>
+            {(equation) => (
+              <li>
+                <Words prose={equation} />
+              </li>
+            )}
+          </For>
+        </ul>
+        <p class="quiet">
+          <Words prose={note().model.source} />
+        </p>
+        <For each={note().model.cautions}>{(caution) => <p class="quiet warn">{caution}</p>}</For>
+      </section>
+      <section aria-labelledby="regimens">
+        <h2 id="regimens">Regimens</h2>
+        <For each={note().regimens}>
+          {(regimen) => (
+            <div class={`regimen s${regimen.label.style}`}>
+              <p>
+                <RegimenTag label={regimen.label} /> <Words prose={regimen.sentence} />
+              </p>
+              <For each={regimen.notes}>{(remark) => <p class="quiet">{remark}</p>}</For>
+            </div>
+          )}
+        </For>
+      </section>
+      <section aria-labelledby="targets">
+        <h2 id="targets">Targets</h2>
+        <ul class="targets">
+          <For each={note().targets} fallback={<li class="quiet">No target is stated.</li>}>
+            {(target) => (
+              <li>
+                <Words prose={target} />
+              </li>
+            )}
+          </For>
+        </ul>
+      </section>
+    </article>
+  )
+}
+
+const STANDING = { inside: 'inside', outside: 'outside', unknown: 'not known', question: 'check' } as const

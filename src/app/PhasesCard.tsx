@@ -1,0 +1,45 @@
+import { createMemo, For, Show } from 'solid-js'
+import { phasesFigure } from '../report/figurePhases'
+import type { PhasesBlock, PhasesView } from '../report/page/page'
+import { DownloadButton } from './DownloadButton'
+import { FigureView } from './FigureView'
+import { Grid } from './Grid'
+import type { StudyDesk } from './studyDesk'
+import { Words } from './Words'
+import { createWidth } from './width'
+
+/** The phases of the model, when distribution is over and when steady state is near. */
+export function PhasesCard(props: { desk: StudyDesk; phases: PhasesView }) {
+  return (
+    <section class="phases card" aria-labelledby="phases-title">
+      <div class="row">
+        <h2 id="phases-title">Phases</h2>
+        <DownloadButton desk={props.desk} what="phases" />
+      </div>
+      <Show when={props.phases.why}>{(why) => <p class="quiet">{why()}</p>}</Show>
+      <For each={props.phases.blocks}>{(block) => <Block block={block} />}</For>
+      <Grid grid={props.phases.sampling} />
+    </section>
+  )
+}
+
+function Block(props: { block: PhasesBlock }) {
+  let frame!: HTMLDivElement
+  const width = createWidth(() => frame, 520)
+  const figure = createMemo(() => phasesFigure(props.block.figure, width()))
+  return (
+    <div class="phase-block">
+      <div ref={frame}>
+        <FigureView figure={figure()} />
+      </div>
+      <Grid grid={props.block.table} />
+      <For each={props.block.sentences}>
+        {(sentence) => (
+          <p class="quiet">
+            <Words prose={sentence} />
+          </p>
+        )}
+      </For>
+    </div>
+  )
+}
