@@ -49,7 +49,12 @@ export function administrations(request: AdministrationsRequest): WrittenOut {
     )
   })
   out.administrations.sort((a, b) => a.at - b.at)
-  return out
+  return { ...out, issues: withoutRepeats(out.issues) }
+}
+
+/** Issues without those that say the same of the same place again. */
+export function withoutRepeats(issues: readonly Issue[]): Issue[] {
+  return [...new Map(issues.map((issue) => [`${issue.path}: ${issue.message}`, issue])).values()]
 }
 
 /** The person in force at a time: of the last stretch that has begun. */

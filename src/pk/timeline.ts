@@ -4,13 +4,18 @@ import type { Dose } from './dose'
 import type { Model } from './model'
 import type { Segment } from './segment'
 import { type Session, withAddedClearance } from './sessions'
-import type { Stretch } from './subject'
 import { isBefore, sameTime } from './times'
+
+/** A model from `from` on, until the next stretch; the first is in force from the start. */
+export interface ModelStretch {
+  readonly from: Hours
+  readonly model: Model
+}
 
 export interface TimelineRequest {
   /** Drug entering compartments, in any order; what enters at or after `until` is left out. */
   readonly doses: readonly Dose[]
-  readonly stretches: readonly Stretch[]
+  readonly models: readonly ModelStretch[]
   readonly sessions: readonly Session[]
   readonly until: Hours
 }
@@ -22,15 +27,15 @@ export interface TimelineRequest {
  * between its two cuts, so that exactly its amount enters; an infusion too short to have two cuts enters at once.
  */
 export function timeline(request: TimelineRequest): Segment[] {
-  const { stretches, sessions, until } = request
+  const { models, sessions, until } = request
   const doses = request.doses.filter((dose) => isBefore(dose.start, until))
   const cuts = cutsOf(request, doses)
-  const size = stretches[0].subject.model.compartments.length
+  const size = models[0].model.compartments.length
   const none: ReadonlyVector = new Array<number>(size).fill(0)
   const boluses = new Map<number, number[]>()
   const starts = new Map<number, Infusion[]>()
   for (const dose of doses) place(dose, cuts, size, boluses, starts)
-  const models = new ModelsInForce(stretches, sessions)
+  const inForce = new ModelsInForce(models, sessions)
   const segments: Segment[] = []
   let running: Infusion[] = []
   let inputs = none
@@ -45,7 +50,7 @@ export function timeline(request: TimelineRequest): Segment[] {
     segments.push({
       start,
       duration: cuts[k + 1] - start,
-      model: models.at(start),
+      model: inForce.at(start),
       boluses: boluses.get(k) ?? none,
       inputs
     })
@@ -62,13 +67,13 @@ interface Infusion {
 
 /** Ascending times from 0 to `until` at which something starts or ends. */
 function cutsOf(request: TimelineRequest, doses: readonly Dose[]): Hours[] {
-  const { stretches, sessions, until } = request
+  const { models, sessions, until } = request
   const times: Hours[] = []
   for (const dose of doses) {
     times.push(dose.start)
     if (dose.kind === 'infusion') times.push(dose.start + dose.duration)
   }
-  for (const stretch of stretches) times.push(stretch.from)
+  for (const stretch of models) times.push(stretch.from)
   for (const session of sessions) times.push(session.start, session.start + session.duration)
   times.sort((a, b) => a - b)
   const cuts: Hours[] = [0]
@@ -124,18 +129,18 @@ function summed(running: readonly Infusion[], size: number): ReadonlyVector {
 
 /** The model of the stretch with the clearances of the sessions in force; one object for each combination met. */
 class ModelsInForce {
-  readonly #stretches: readonly Stretch[]
+  readonly #stretches: readonly ModelStretch[]
   readonly #sessions: readonly Session[]
   readonly #made = new Map<Model, Map<number, Model>>()
 
-  constructor(stretches: readonly Stretch[], sessions: readonly Session[]) {
+  constructor(stretches: readonly ModelStretch[], sessions: readonly Session[]) {
     this.#stretches = stretches
     this.#sessions = sessions
   }
 
   at(time: Hours): Model {
-    let model = this.#stretches[0].subject.model
-    for (const stretch of this.#stretches) if (!isBefore(time, stretch.from)) model = stretch.subject.model
+    let model = this.#stretches[0].model
+    for (const stretch of this.#stretches) if (!isBefore(time, stretch.from)) model = stretch.model
     let clearance = 0
     for (const session of this.#sessions) {
       if (!isBefore(time, session.start) && isBefore(time, session.start + session.duration)) {
