@@ -1,8 +1,8 @@
 """
-Recompute what the model files expect of themselves, and what the worked studies give, by independent.py.
+Recompute what the model files expect of themselves, and the course of every model, by independent.py.
 
     python3 test/reference/models/recompute.py            compare every check of models/drugs, print the worst
-    python3 test/reference/models/recompute.py studies    also write studies.json, the worked studies' courses
+    python3 test/reference/models/recompute.py courses    also write courses.json, every model by every route
 
 A check `printed in the source` is compared within its own tolerance; all others must agree to 1e-12.
 """
@@ -56,35 +56,50 @@ def compare():
     print(f"worst difference of the other checks: {mp.nstr(worst, 3)}")
 
 
-def studies():
-    """Courses of the worked studies at times that fall on no sampling grid of theirs, and around it."""
-    out = []
-    for path in sorted((ROOT / "models/studies").glob("*.json")):
-        study = json.loads(path.read_text())
-        model = json.loads((ROOT / f"models/drugs/{study['model']}.json").read_text())
-        until = hours(study["sampling"]["until"])
-        every = hours(study["sampling"]["every"])
-        steps = int(until / every)
-        times = sorted({every * (steps * k // 24) for k in range(1, 25)} | {until})
-        for regimen in study["regimens"]:
-            rows, _ = simulate(model, study, regimen, times, until)
+def courses():
+    """Every model, by every one of its routes, in the patient of its first check: three doses of 100 mg."""
+    hour = lambda x: {"value": x, "unit": "h"}
+    cases = []
+    for path in sorted((ROOT / "models/drugs").glob("*.json")):
+        model = json.loads(path.read_text())
+        regimens = []
+        for route in model["routes"]:
+            dose = {"route": route["name"], "amount": {"value": 100, "unit": "mg"}, "at": hour(0), "every": hour(8), "count": 3}
+            if route.get("input") == "infusion":
+                dose["over"] = hour(0.5)
+            if "products" in model["drug"]:
+                dose["product"] = model["drug"]["products"][0]["name"]
+            regimens.append({"name": route["name"], "doses": [dose]})
+        study = {
+            "format": "phasewise-study", "version": 1, "title": model["title"], "model": model["id"],
+            "patient": model["checks"][0]["patient"], "regimens": regimens, "sampling": {"until": hour(30), "every": hour(1)},
+        }
+        # Before and after each dose, inside an infusion, at a dose, and long after the last.
+        times = [D(t) for t in ("0.25", "0.75", "2", "8", "8.25", "11", "16.5", "24", "30")]
+        for regimen in regimens:
+            rows, _ = simulate(model, study, regimen, times, times[-1])
             for t in times:
-                row = rows[t]
-                balance = sum(row["amounts"].values()) + row["eliminated"] - row["entered"]
-                assert abs(balance) <= mpf("1e-25") * row["entered"], (path.name, t)
-            out.append({
-                "study": path.stem, "regimen": regimen["name"],
-                "rows": [{"time_h": float(t), "concentration_mg_L": float(rows[t]["concentration"]),
-                          "effectSites_mg_L": {k: float(v) for k, v in rows[t]["sites"].items()},
-                          "auc_mg_h_L": float(rows[t]["area"]), "eliminated_mg": float(rows[t]["eliminated"])} for t in times],
-            })
-    note = ("courses of the worked studies, recomputed in 40-digit arithmetic by recompute.py; "
-            "a value at a dose's or a change's time is the one just before it")
-    text = json.dumps({"note": note, "courses": out}, indent=1)
-    (Path(__file__).parent / "studies.json").write_text(text + "\n")
+                balance = sum(rows[t]["amounts"].values()) + rows[t]["eliminated"] - rows[t]["entered"]
+                assert abs(balance) <= mpf("1e-25") * rows[t]["entered"], (path.name, t)
+            regimen["expected"] = [
+                {"time_h": float(t), "concentration_mg_L": float(rows[t]["concentration"]),
+                 "effectSites_mg_L": [float(v) for v in rows[t]["sites"].values()],
+                 "observations_mg_L": [float(v) for v in observed(model, study, rows[t])],
+                 "auc_mg_h_L": float(rows[t]["area"]), "eliminated_mg": float(rows[t]["eliminated"])} for t in times]
+        expected = [{"regimen": r["name"], "rows": r.pop("expected")} for r in regimens]
+        cases.append({"study": study, "expected": expected})
+    note = ("every model by every route, recomputed in 40-digit arithmetic by recompute.py; "
+            "a value at a dose's time is the one just before it")
+    (Path(__file__).parent / "courses.json").write_text(json.dumps({"note": note, "cases": cases}, indent=1) + "\n")
+
+
+def observed(model, study, row):
+    """Each of the model's observations: the amounts in its compartments over the volume that they share."""
+    volume = Linear(model, study["patient"]).volume
+    return [sum(row["amounts"][c] for c in o["of"]) / volume[o["of"][0]] for o in model.get("observations", [])]
 
 
 if __name__ == "__main__":
     compare()
-    if "studies" in sys.argv:
-        studies()
+    if "courses" in sys.argv:
+        courses()
