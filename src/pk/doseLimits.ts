@@ -1,4 +1,4 @@
-import type { Hours, Milligrams } from '../units/canonical'
+import type { Hours } from '../units/canonical'
 
 /** A dose over one of the drug's limits. */
 export interface DoseOverLimit {

@@ -10,8 +10,13 @@ export interface Phase {
   readonly coefficient: number
   /** Of the area after a bolus. */
   readonly shareOfAuc: number
-  /** coefficient / (e^(lambda tau) - 1) over their sum; undefined without a period. */
-  readonly shareOfAccumulation: number | undefined
+}
+
+/** Which phases make the accumulation when a dose is repeated after `period`. */
+export interface SharesOfAccumulation {
+  readonly period: Hours
+  /** coefficient / (e^(lambda period) - 1) over their sum, one a phase in the order of the phases. */
+  readonly shares: readonly number[]
 }
 
 /** A rate outside the disposition: absorption, a transit, an effect site. */
@@ -34,6 +39,8 @@ export interface PhasesOfStretch {
   readonly names: readonly string[]
   /** Fastest first; empty where the disposition has no such sum (see `why.phases`). */
   readonly phases: readonly Phase[]
+  /** One for each dosing period asked for. */
+  readonly accumulation: readonly SharesOfAccumulation[]
   /** Position of the slowest phase that carries at least 10 % of the area. */
   readonly rulingPhase: number | undefined
   readonly absorption: readonly InputRate[]
