@@ -50,7 +50,8 @@ def eigenvalues(m, groups):
             values.append(mp.mpc(outflow(m, group[0])))
         else:
             values.extend(mp.mpc(v) for v in mp.eig(matrix(m, group), left=False, right=False))
-    return sorted(values, key=lambda v: (-v.real, -v.imag))
+    # As doubles: the real parts of a pair differ in their last digits.
+    return sorted((pair(v) for v in values), key=lambda v: (-v[0], -v[1]))
 
 
 def coefficients(m, to, weights, source):
@@ -81,7 +82,7 @@ def entry(m):
     groups = components(m, to)
     weights = [1.0 / m["volume"] if i == m["observed"] else 0.0 for i in range(m["size"])]
     result = {key: m[key] for key in ("name", "size", "between", "out")}
-    result["eigenvalues"] = [pair(v) for v in eigenvalues(m, groups)]
+    result["eigenvalues"] = eigenvalues(m, groups)
     result["responses"] = []
     for source in sorted({m["observed"], m["inputs"][0]}):
         if m["size"] == 24:
