@@ -1,0 +1,99 @@
+import type { RegimenResult, StudyResult } from '../study/result'
+import { CAUTION } from './caution'
+import { STEADY_STATE_NAMES, whenWord } from './exposureDocument'
+import { nameAndUnit } from './longTable'
+import { alignedRows, plainNumber, plainPercent } from './plainText'
+
+/** Quantities of the steady state that are shares of time. */
+const SHARES = new Set(['timeInWindow', 'timeAbove', 'timeBelow'])
+
+/** The exposure as it is read on a terminal: three significant figures, a reason for each dash. */
+export function exposureText(result: StudyResult): string {
+  const lines = [result.study.title, '']
+  for (const regimen of result.regimens) lines.push(...regimenText(regimen), '')
+  lines.push(...result.cautions.map((caution) => `Caution: ${caution}.`), CAUTION)
+  return `${lines.join('\n')}\n`
+}
+
+function regimenText(regimen: RegimenResult): string[] {
+  const { exposure } = regimen
+  const intervals = alignedRows([
+    [
+      'interval',
+      'from, h',
+      'to, h',
+      'peak, mg/L',
+      'at, h',
+      'trough, mg/L',
+      'minimum, mg/L',
+      'average, mg/L',
+      'AUC, mg.h/L'
+    ],
+    ...exposure.intervals.map((interval, i) => [
+      `${i + 1}${interval.incomplete ? ' incomplete' : ''}`,
+      plainNumber(interval.start),
+      plainNumber(interval.end),
+      plainNumber(interval.peak),
+      plainNumber(interval.peakTime),
+      plainNumber(interval.trough),
+      plainNumber(interval.minimum),
+      plainNumber(interval.average),
+      plainNumber(interval.auc)
+    ])
+  ])
+  const days = alignedRows([
+    ['day', 'AUC, mg.h/L', 'in window', 'above', 'below'],
+    ...exposure.days.map((day) => [
+      String(day.day),
+      plainNumber(day.auc),
+      plainPercent(day.timeInWindow),
+      plainPercent(day.timeAbove),
+      plainPercent(day.timeBelow)
+    ])
+  ])
+  return [
+    regimen.name,
+    '',
+    ...indented(intervals),
+    '',
+    ...indented(days),
+    '',
+    '  Steady state, if nothing changed any more',
+    ...indented(steadyStateText(regimen)),
+    ...(exposure.targets.length === 0 ? [] : ['', '  Targets', ...indented(targetsText(regimen))]),
+    ...regimen.notes.map((note) => `  Note: ${note}.`)
+  ]
+}
+
+function steadyStateText(regimen: RegimenResult): string[] {
+  const { steadyState } = regimen.exposure
+  const entries = Object.entries(STEADY_STATE_NAMES) as [keyof typeof STEADY_STATE_NAMES, string][]
+  const rows = entries.map(([name, shown]) => {
+    const { quantity, unit } = nameAndUnit(shown)
+    const value = steadyState[name]
+    const number = SHARES.has(name) ? plainPercent(value) : plainNumber(value)
+    return {
+      cells: [quantity, number, unit === '1' ? '' : unit],
+      why: value === undefined ? steadyState.why[name] : ''
+    }
+  })
+  return alignedRows(rows.map((row) => row.cells)).map((line, i) => {
+    const why = rows[i]?.why
+    return why ? `${line}  ${why}` : line
+  })
+}
+
+function targetsText(regimen: RegimenResult): string[] {
+  return alignedRows(
+    regimen.exposure.targets.map((result) => [
+      `${result.index} ${result.target.kind}, ${whenWord(result.target.when)}`,
+      plainNumber(result.value),
+      result.unit,
+      result.met === undefined ? `not evaluable: ${result.why ?? ''}` : result.met ? 'met' : 'not met'
+    ])
+  )
+}
+
+function indented(lines: readonly string[]): string[] {
+  return lines.map((line) => `  ${line}`)
+}
