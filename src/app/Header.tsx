@@ -7,14 +7,14 @@ import type { StudyDesk } from './studyDesk'
 export function Header(props: { desk: StudyDesk }) {
   const desk = props.desk
   let chooser!: HTMLInputElement
+  let shelf!: HTMLUListElement
   const openChosen = () => {
     const file = chooser.files?.[0]
     chooser.value = ''
     if (file !== undefined) void desk.open({ name: file.name, content: file })
   }
-  const openShipped = (event: Event & { currentTarget: HTMLSelectElement }) => {
-    const id = event.currentTarget.value
-    event.currentTarget.value = ''
+  const openShipped = (id: string) => {
+    shelf.hidePopover()
     shippedStudy(id).then(desk.open, (failure: Error) => desk.refuse(`${id}.json`, failure.message))
   }
   const save = () => {
@@ -26,10 +26,20 @@ export function Header(props: { desk: StudyDesk }) {
       <span class="brand">Phasewise</span>
       <h1>{desk.page()?.title ?? ''}</h1>
       <div class="actions">
-        <select aria-label="Worked studies" onChange={openShipped}>
-          <option value="">Worked studies</option>
-          <For each={SHIPPED_STUDIES}>{(study) => <option value={study.id}>{study.title}</option>}</For>
-        </select>
+        <button type="button" popovertarget="worked-studies">
+          Worked studies
+        </button>
+        <ul ref={shelf} id="worked-studies" class="shelf" popover="auto">
+          <For each={SHIPPED_STUDIES}>
+            {(study) => (
+              <li>
+                <button type="button" onClick={() => openShipped(study.id)}>
+                  {study.title}
+                </button>
+              </li>
+            )}
+          </For>
+        </ul>
         <input ref={chooser} type="file" accept=".json,application/json" hidden onChange={openChosen} />
         <button
           type="button"

@@ -1,6 +1,6 @@
-import { existsSync, mkdirSync, readFileSync } from 'node:fs'
+import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs'
 import { createServer, type Server } from 'node:http'
-import { type AddressInfo } from 'node:net'
+import type { AddressInfo } from 'node:net'
 import { resolve } from 'node:path'
 import { type Browser, type BrowserContext, type BrowserContextOptions, chromium, type Page } from 'playwright-core'
 import sirv from 'sirv'
@@ -20,7 +20,7 @@ const FLAGS = [
 /**
  * A real browser that comes with the packages: CHROME_BIN, else the packaged one, else what is installed.
  * The packaged one unpacks its libraries only where it believes to run as a function, and into TMPDIR, whatever its
- * version: hence the variable, and a folder named after the version.
+ * version: hence the variable, and a folder named after the version. The variables that it sets for itself are passed on.
  */
 export async function launchBrowser(): Promise<Browser> {
   const environment = { ...process.env, LANG: 'en_US.UTF-8' }
@@ -31,6 +31,7 @@ export async function launchBrowser(): Promise<Browser> {
     const folder = resolve(`node_modules/.cache/chromium-${packagedVersion()}`)
     mkdirSync(folder, { recursive: true })
     process.env.AWS_LAMBDA_JS_RUNTIME = 'nodejs20.x'
+    process.env.FONTCONFIG_FILE = fontConfiguration(folder)
     const before = process.env.TMPDIR
     process.env.TMPDIR = folder
     const { default: packaged } = await import('@sparticuz/chromium')
@@ -45,7 +46,20 @@ export async function launchBrowser(): Promise<Browser> {
     })
   }
   if (existsSync('/usr/bin/chromium')) return chromium.launch({ executablePath: '/usr/bin/chromium', args: FLAGS })
-  return chromium.launch({ channel: 'chrome', args: FLAGS }).catch(() => chromium.launch({ channel: 'msedge', args: FLAGS }))
+  return chromium
+    .launch({ channel: 'chrome', args: FLAGS })
+    .catch(() => chromium.launch({ channel: 'msedge', args: FLAGS }))
+}
+
+/** The package's own font list looks for its fonts in /tmp only; without any font a page shows no text at all. */
+function fontConfiguration(folder: string): string {
+  const file = `${folder}/phasewise-fonts.conf`
+  writeFileSync(
+    file,
+    `<?xml version="1.0"?><!DOCTYPE fontconfig SYSTEM "fonts.dtd"><fontconfig><dir>${folder}/fonts</dir>` +
+      `<dir>/usr/share/fonts</dir><cachedir>${folder}/fonts-cache</cachedir></fontconfig>`
+  )
+  return file
 }
 
 function packagedVersion(): string {
