@@ -157,7 +157,7 @@ function givenOrComputed(name: ComputedCovariate, person: Person, drugModel: Dru
 }
 
 /** A computed covariate as an estimate, the given value first. */
-function givenFirst(name: ComputedCovariate, person: Person, drugModel: DrugModel): Estimate {
+export function givenFirst(name: ComputedCovariate, person: Person, drugModel: DrugModel): Estimate {
   const given = person.numbers[name]
   return given === undefined
     ? computedCovariate(name, person, drugModel)

@@ -54,6 +54,8 @@ export interface Source {
 
 export interface Studied {
   readonly subjects?: number
+  /** Largest single dose that was studied, of the moiety. */
+  readonly largestDose?: Milligrams
   readonly description: string
   readonly ranges: readonly CovariateRange[]
 }

@@ -35,10 +35,12 @@ export function findingsOverTime(
  * or 1.5 times the lowest of the 7 d before it, or has fallen by as much. A value is in force until the next replaces it.
  */
 export function unstableCreatinine(drugModel: DrugModel, people: readonly PersonFrom[]): readonly Finding[] {
-  const values = people.flatMap(({ from, person }) => {
+  const values: { readonly from: Hours; readonly value: number }[] = []
+  for (const { from, person } of people) {
     const value = person.numbers.serumCreatinine
-    return value === undefined ? [] : [{ from, value }]
-  })
+    // A stretch that changes something else keeps the creatinine in force, and is no second finding.
+    if (value !== undefined && value !== values.at(-1)?.value) values.push({ from, value })
+  }
   const findings: Finding[] = []
   values.forEach(({ from, value }, position) => {
     const before = (hours: Hours) =>

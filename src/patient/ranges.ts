@@ -15,8 +15,9 @@ export type Position =
   | { readonly kind: 'other' }
 
 export function positionIn(range: CovariateRange, value: number | string): Position {
-  if (typeof value === 'string')
-    return range.categories === undefined || range.categories.includes(value) ? { kind: 'inside' } : { kind: 'other' }
+  // A category against bounds, or a number against categories, is never "inside".
+  if (typeof value === 'string') return range.categories?.includes(value) ? { kind: 'inside' } : { kind: 'other' }
+  if (range.categories !== undefined) return { kind: 'other' }
   const { low, high } = range
   if (low !== undefined && value < low - ON_THE_BOUND * Math.abs(low))
     return low === 0 ? { kind: 'below' } : { kind: 'below', by: (low - value) / Math.abs(low) }
