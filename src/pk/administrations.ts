@@ -141,7 +141,8 @@ function writeLine(request: LineRequest, out: MutableWrittenOut): void {
   const notGiven = Number.isFinite(last) ? last - inTime : late
   if (notGiven > 0) {
     const which = Number.isFinite(last) ? `${notGiven} of ${last}` : String(notGiven)
-    out.notes.push(`${nameOf(request)}: ${which} doses would come at or after ${plain(until)} h and are not given`)
+    const [doses, are] = notGiven === 1 ? ['dose', 'is'] : ['doses', 'are']
+    out.notes.push(`${nameOf(request)}: ${which} ${doses} would come at or after ${plain(until)} h and ${are} not given`)
   }
 }
 
