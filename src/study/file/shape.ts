@@ -1,0 +1,112 @@
+import { z } from 'zod'
+import { nearestName } from '../nearestName'
+import { formatPath, type Step } from '../path'
+import type { Problems } from '../problems'
+import { quantityProblem } from '../unitProblem'
+import type { QuantityAsked } from './quantitySchema'
+
+// A strict content security policy forbids the code that zod would otherwise compile.
+z.config({ jitless: true })
+
+/**
+ * Compare a value with its schema and list every difference, each at its path below `at`.
+ * The value itself is used afterwards, not a copy: no schema changes what it reads.
+ */
+export function checkShape(schema: z.ZodType, raw: unknown, at: readonly Step[], problems: Problems): void {
+  const result = schema.safeParse(raw, { reportInput: true, error: knownKeysOf })
+  if (result.success) return
+  for (const issue of result.error.issues) report(issue, at, problems)
+}
+
+/** The keys that an object may have, one a line, as the message of an unknown key; other messages are written below. */
+function knownKeysOf(issue: z.core.$ZodRawIssue): string | undefined {
+  if (issue.code !== 'unrecognized_keys') return undefined
+  return issue.inst instanceof z.ZodObject ? Object.keys(issue.inst.shape).join('\n') : ''
+}
+
+function report(issue: z.core.$ZodIssue, at: readonly Step[], problems: Problems): void {
+  const steps = [...at, ...issue.path.map((step) => (typeof step === 'symbol' ? String(step) : step))]
+  if (issue.code !== 'unrecognized_keys') {
+    problems.addMalformed(steps, messageOf(issue, nameOf(steps)))
+    return
+  }
+  const known = issue.message.split('\n')
+  for (const key of issue.keys) {
+    problems.add(
+      formatPath([...steps, key]),
+      `unknown key "${key}"; the nearest known key is "${nearestName(key, known)}"`
+    )
+  }
+}
+
+/** What the value at a place is called in its own file: its key, or the key of the list it stands in. */
+function nameOf(steps: readonly Step[]): string {
+  const key = steps.findLast((step) => typeof step === 'string')
+  if (key === undefined) return 'the file'
+  return typeof steps.at(-1) === 'number' ? `each of ${key}` : String(key)
+}
+
+function messageOf(issue: z.core.$ZodIssue, name: string): string {
+  const { input } = issue
+  switch (issue.code) {
+    case 'custom': {
+      const asked = issue.params?.quantity as QuantityAsked | undefined
+      return (asked && quantityProblem(input, name, asked.kind, asked.sign)) ?? issue.message
+    }
+    case 'invalid_type':
+      if (input === undefined) return `${name} is missing; it must be ${EXPECTED[issue.expected] ?? issue.expected}`
+      return `${name} must be ${EXPECTED[issue.expected] ?? issue.expected}, got ${describe(input)}`
+    case 'invalid_value':
+      return oneOf(name, input, issue.values.map(String))
+    case 'invalid_union':
+      if (issue.discriminator === undefined || typeof input !== 'object' || input === null) break
+      return oneOf(
+        name,
+        (input as Record<string, unknown>)[issue.discriminator],
+        ((issue as { options?: unknown[] }).options ?? []).map(String)
+      )
+    case 'too_small':
+      if (issue.origin === 'array') return `${name} needs at least ${issue.minimum}, got ${lengthOf(input)}`
+      if (issue.origin === 'string') return `${name} must not be empty`
+      return `${name} must be ${issue.inclusive ? 'at least' : 'greater than'} ${issue.minimum}, got ${describe(input)}`
+    case 'too_big':
+      if (issue.origin === 'array') return `${name} must have at most ${issue.maximum}, got ${lengthOf(input)}`
+      if (issue.origin === 'string') return `${name} must have at most ${issue.maximum} characters`
+      return `${name} must be ${issue.inclusive ? 'at most' : 'less than'} ${issue.maximum}, got ${describe(input)}`
+    case 'invalid_key':
+      return `"${name}" cannot be a name: ${issue.issues.map((inner) => inner.message).join('; ')}`
+  }
+  return `${name} ${issue.message}`
+}
+
+const EXPECTED: Readonly<Record<string, string>> = {
+  string: 'text in double quotes',
+  number: 'a number',
+  int: 'a whole number',
+  boolean: 'true or false',
+  object: 'an object in braces',
+  record: 'an object in braces',
+  array: 'a list in brackets',
+  tuple: 'a list in brackets'
+}
+
+function oneOf(name: string, input: unknown, values: readonly string[]): string {
+  const listed = values.map((value) => `"${value}"`).join(', ')
+  const asked = values.length === 1 ? `must be ${listed}` : `must be one of ${listed}`
+  if (input === undefined) return `${name} is missing; it ${asked}`
+  const nearest = typeof input === 'string' && values.length > 1 ? nearestName(input, values) : undefined
+  const hint = nearest === undefined ? '' : `; the nearest is "${nearest}"`
+  return `${name} ${asked}, got ${describe(input)}${hint}`
+}
+
+function describe(input: unknown): string {
+  if (input === null) return 'null'
+  if (Array.isArray(input)) return 'a list'
+  if (typeof input === 'object') return 'an object'
+  const text = JSON.stringify(input) ?? String(input)
+  return text.length > 60 ? `${text.slice(0, 57)}...` : text
+}
+
+function lengthOf(input: unknown): number | string {
+  return Array.isArray(input) ? input.length : describe(input)
+}

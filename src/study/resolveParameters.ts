@@ -1,0 +1,253 @@
+import type { CovariateUnit, Factor, Parameter, Term } from '../patient/drugModel'
+import { isUnitOfActivity } from '../units/nearestUnit'
+import type { Quantity } from '../units/quantity'
+import { KIND_NAMES, type Kind, unitOf } from '../units/unitTable'
+import type { Converter } from './converter'
+import type { FactorFile, ModelFile, ParameterFile } from './file/modelSchema'
+import { type Covariate, covariateUnit } from './knownCovariates'
+import type { ParameterUse } from './modelNames'
+import { knownNames } from './nearestName'
+import { below } from './path'
+import { open } from './soundMembers'
+
+/** What a parameter that nothing uses may be. */
+const PARAMETER_KINDS: readonly Kind[] = [
+  'clearance',
+  'volume',
+  'rateConstant',
+  'time',
+  'fraction',
+  'amountRate',
+  'concentration',
+  'association'
+]
+
+const PER_KG = /\/\(?(?:70\.?)?kg|kg-1|kg\^-1/i
+
+export interface ParametersRequest {
+  readonly file: ModelFile
+  /** Where the model stands in its file; empty for a file of its own. */
+  readonly path: string
+  readonly uses: ReadonlyMap<string, readonly ParameterUse[]>
+  readonly covariates: ReadonlyMap<string, Covariate>
+  readonly convert: Converter
+}
+
+/** Every parameter of a model: its unit by what it is used as, its typical value as terms and factors. */
+export function resolveParameters(request: ParametersRequest): Parameter[] {
+  const { file, convert } = request
+  const path = below(request.path, 'parameters')
+  if (!convert.problems.isOpen(path)) return []
+  const parameters: Parameter[] = []
+  for (const [name, parameter] of Object.entries(file.parameters)) {
+    const at = below(path, name)
+    if (!convert.problems.isSound(at)) continue
+    parameters.push({
+      name,
+      unit: parameter.unit,
+      toCanonical: unitRatio(name, parameter.unit, at, request),
+      typical: parameter.typical.map((term, i) => resolveTerm(term, below(below(at, 'typical'), i), request)),
+      ...assumption(parameter, at, convert)
+    })
+    checkVolume(name, parameter, at, request)
+  }
+  checkCorrelations(request)
+  return parameters
+}
+
+/** The kind of a parameter by its first use; undefined for one that nothing uses. */
+export function kindOf(
+  name: string,
+  unit: string,
+  uses: ReadonlyMap<string, readonly ParameterUse[]>
+): Kind | undefined {
+  return uses.get(name)?.at(0)?.kind ?? PARAMETER_KINDS.find((kind) => unitOf(kind, unit) !== undefined)
+}
+
+function unitRatio(
+  name: string,
+  unit: string,
+  at: string,
+  { uses, convert }: ParametersRequest
+): Parameter['toCanonical'] {
+  const path = below(at, 'unit')
+  const first = uses.get(name)?.at(0)
+  const other = uses.get(name)?.find((use) => use.kind !== first?.kind)
+  if (first !== undefined && other !== undefined) {
+    convert.problems.add(
+      at,
+      `"${name}" is used as a ${KIND_NAMES[first.kind]} (${first.path}) and as a ${KIND_NAMES[other.kind]} (${other.path})`
+    )
+    return { times: 1, per: 1 }
+  }
+  if (PER_KG.test(unit)) {
+    convert.problems.add(
+      path,
+      `the unit of a parameter is never per kg, got "${unit}"; leave "/kg" out and use a factor "power" of the weight with reference 1 kg and exponent 1`
+    )
+    return { times: 1, per: 1 }
+  }
+  const kind = kindOf(name, unit, uses)
+  if (kind === undefined) {
+    const activity = isUnitOfActivity(unit) ? '; drugs measured in units of activity are not handled' : ''
+    convert.problems.add(path, `"${unit}" is not a unit of any parameter that a model can have${activity}`)
+    return { times: 1, per: 1 }
+  }
+  return convert.ratio(kind, unit, path)
+}
+
+type Assumable = { assumed?: true | undefined; because?: string | undefined }
+
+/** A number that was not read in the source says why it stands there. */
+function assumption(marked: Assumable, at: string, convert: Converter): { assumed?: { because: string } } {
+  if (marked.assumed === true && marked.because === undefined) {
+    convert.problems.add(
+      at,
+      '"assumed" needs "because": why the number stands there though it was not read in the source'
+    )
+  }
+  if (marked.assumed === undefined && marked.because !== undefined) {
+    convert.problems.add(below(at, 'because'), '"because" stands beside "assumed": true only')
+  }
+  return marked.assumed === true ? { assumed: { because: marked.because ?? '' } } : {}
+}
+
+function resolveTerm(term: ParameterFile['typical'][number], at: string, request: ParametersRequest): Term {
+  const factors: Factor[] = []
+  const reasons: string[] = []
+  const own = assumption(term, at, request.convert).assumed
+  if (own !== undefined) reasons.push(own.because)
+  for (const [i, factor] of (term.factors ?? []).entries()) {
+    const path = below(below(at, 'factors'), i)
+    const resolved = resolveFactor(factor, path, request)
+    if (resolved !== undefined) factors.push(resolved)
+    const assumed = assumption(factor, path, request.convert).assumed
+    if (assumed !== undefined) reasons.push(assumed.because)
+  }
+  return { value: term.value, factors, ...(reasons.length > 0 && { assumed: { because: reasons.join('; ') } }) }
+}
+
+function resolveFactor(factor: FactorFile, at: string, request: ParametersRequest): Factor | undefined {
+  const { problems } = request.convert
+  const path = below(at, 'covariate')
+  const covariate = request.covariates.get(factor.covariate)
+  if (covariate === undefined) {
+    const hint =
+      factor.covariate === 'dosingWeight'
+        ? 'the dosing weight never enters a covariate relation; use "weight"'
+        : `no covariate is called "${factor.covariate}"; ${knownNames(factor.covariate, [...request.covariates.keys()])}; a model declares its own under "covariates"`
+    problems.add(path, hint)
+    return undefined
+  }
+  if (factor.kind === 'category') {
+    if (covariate.sort !== 'category') {
+      problems.add(path, `"${factor.covariate}" is a number, a factor "category" needs a covariate with categories`)
+      return undefined
+    }
+    return resolveCategory(factor, covariate.categories, at, request)
+  }
+  if (covariate.sort === 'category') {
+    problems.add(path, `"${factor.covariate}" has categories; use a factor "category"`)
+    return undefined
+  }
+  const named = (key: string, quantity: Quantity): [number, CovariateUnit] | undefined => {
+    const unit = covariateUnit(covariate, quantity.unit, below(at, key), problems)
+    return unit === undefined ? undefined : [quantity.value, unit]
+  }
+  const { covariate: name } = factor
+  switch (factor.kind) {
+    case 'power': {
+      const reference = named('reference', factor.reference)
+      return (
+        reference && {
+          kind: 'power',
+          covariate: name,
+          reference: reference[0],
+          in: reference[1],
+          exponent: factor.exponent
+        }
+      )
+    }
+    case 'linear': {
+      const reference = named('reference', factor.reference)
+      return (
+        reference && { kind: 'linear', covariate: name, reference: reference[0], in: reference[1], slope: factor.slope }
+      )
+    }
+    case 'exponential': {
+      const reference = named('reference', factor.reference)
+      return (
+        reference && {
+          kind: 'exponential',
+          covariate: name,
+          reference: reference[0],
+          in: reference[1],
+          rate: factor.rate
+        }
+      )
+    }
+    case 'maturation': {
+      const half = named('half', factor.half)
+      return half && { kind: 'maturation', covariate: name, half: half[0], in: half[1], exponent: factor.exponent }
+    }
+    case 'step': {
+      const place = named('at', factor.at)
+      return (
+        place && { kind: 'step', covariate: name, at: place[0], in: place[1], below: factor.below, from: factor.from }
+      )
+    }
+  }
+}
+
+function resolveCategory(
+  factor: Extract<FactorFile, { kind: 'category' }>,
+  categories: readonly string[],
+  at: string,
+  { convert }: ParametersRequest
+): Factor {
+  const path = below(at, 'values')
+  for (const key of Object.keys(factor.values)) {
+    if (!categories.includes(key)) {
+      convert.problems.add(
+        below(path, key),
+        `"${factor.covariate}" has no category "${key}"; ${knownNames(key, categories)}`
+      )
+    }
+  }
+  const missing = categories.filter((category) => !Object.hasOwn(factor.values, category))
+  if (missing.length > 0) {
+    convert.problems.add(path, `a value is missing for ${missing.map((category) => `"${category}"`).join(', ')}`)
+  }
+  return { kind: 'category', covariate: factor.covariate, values: factor.values }
+}
+
+/** A volume that is 0 or less whoever the patient is; others come out with the individual. */
+function checkVolume(name: string, parameter: ParameterFile, at: string, { uses, convert }: ParametersRequest): void {
+  if (!uses.get(name)?.some((use) => use.kind === 'volume')) return
+  if (parameter.typical.some((term) => (term.factors ?? []).length > 0)) return
+  const sum = parameter.typical.reduce((total, term) => total + term.value, 0)
+  if (!(sum > 0))
+    convert.problems.add(
+      below(at, 'typical'),
+      `the volume "${name}" must be greater than 0, got ${sum} ${parameter.unit}`
+    )
+}
+
+function checkCorrelations({ file, path, convert }: ParametersRequest): void {
+  const { problems } = convert
+  const seen = new Set<string>()
+  for (const [at, { between }] of open(file.correlations, below(path, 'correlations'), problems)) {
+    between.forEach((name, i) => {
+      const place = below(below(at, 'between'), i)
+      if (!Object.hasOwn(file.parameters, name)) {
+        problems.add(place, `no parameter is called "${name}"; ${knownNames(name, Object.keys(file.parameters))}`)
+      } else if (file.parameters[name]?.variability === undefined) {
+        problems.add(place, `"${name}" has no variability, so that nothing can be correlated with it`)
+      }
+    })
+    const pair = [...between].sort().join('\n')
+    if (between[0] === between[1]) problems.add(below(at, 'between'), 'a correlation is between two parameters')
+    if (seen.has(pair)) problems.add(below(at, 'between'), 'this pair has a correlation already')
+    seen.add(pair)
+  }
+}
