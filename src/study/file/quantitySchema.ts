@@ -13,12 +13,12 @@ const byName = new Map<string, z.ZodType<Quantity>>()
 
 /** A value with its unit, of a kind and a sign; whatever is wrong with it is one problem at the quantity's own place. */
 export function quantity(kind: Kind, sign: Sign = 'positive'): z.ZodType<Quantity> {
-  return shared(`${kind}, ${sign}`, { kind, sign })
+  return shared(`${kind}-${sign.replace(' ', '-')}`, { kind, sign })
 }
 
 /** A value with its unit, whose kind depends on other parts of the file. */
 export function quantityOfSomeKind(sign: Sign = 'any'): z.ZodType<Quantity> {
-  return shared(`some kind, ${sign}`, { kind: undefined, sign })
+  return shared(`of-some-kind-${sign.replace(' ', '-')}`, { kind: undefined, sign })
 }
 
 /** One schema for each kind and sign, so that the JSON Schema defines each once. */
@@ -31,7 +31,7 @@ function shared(name: string, asked: QuantityAsked): z.ZodType<Quantity> {
       if (quantityProblem(raw, 'it', asked.kind, asked.sign) === undefined) return
       context.addIssue({ code: 'custom', params: { quantity: asked }, input: raw })
     })
-    .meta({ id: `quantity: ${name}`, ...jsonSchemaOf(asked) })
+    .meta({ id: `quantity-${name}`, ...jsonSchemaOf(asked) })
   byName.set(name, schema)
   return schema
 }

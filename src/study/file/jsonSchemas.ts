@@ -1,0 +1,20 @@
+import { z } from 'zod'
+import { modelSchema } from './modelSchema'
+import { wholeStudySchema } from './studySchema'
+
+/**
+ * The JSON Schemas of both file formats by file name, for editors. They hold what a schema can say: keys, types, units
+ * of each kind. What depends on other parts of a file is checked on reading only.
+ */
+export function jsonSchemas(): Readonly<Record<string, string>> {
+  return {
+    'model.schema.json': written('A Phasewise model file', modelSchema('any')),
+    'study.schema.json': written('A Phasewise study file', wholeStudySchema())
+  }
+}
+
+function written(title: string, schema: z.ZodType): string {
+  const generated = z.toJSONSchema(schema, { io: 'input', unrepresentable: 'any', target: 'draft-2020-12' })
+  const { $schema, ...rest } = generated
+  return `${JSON.stringify({ $schema, title, ...rest }, null, 2)}\n`
+}
