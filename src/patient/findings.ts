@@ -1,3 +1,4 @@
+import type { WeightDescriptor } from '../pk/subject'
 import { covariateOf } from './covariates'
 import { nameInWords, valueInWords } from './covariateWords'
 import type { DrugModel } from './drugModel'
@@ -5,6 +6,7 @@ import type { Note } from './estimate'
 import type { CovariateName, Person } from './person'
 import { outsideInWords, positionIn, rangeInWords } from './ranges'
 import type { Covariates } from './relation'
+import { weightBy } from './weightDescriptor'
 
 /** Something found about this person under this model. Cautions must be shown; notes are read beside the number. */
 export interface Finding {
@@ -103,6 +105,18 @@ export function notesOf(name: CovariateName, notes: readonly Note[]): readonly F
     covariate: name,
     text: note.text
   }))
+}
+
+/** What must be said of the weights by which doses are reckoned; the words are those of the dose lines. */
+export function weightFindings(
+  words: readonly WeightDescriptor[],
+  person: Person,
+  drugModel: DrugModel
+): readonly Finding[] {
+  return [...new Set(words)].flatMap((word) => {
+    const weight = weightBy(word, person, drugModel.covariates.leanWeight?.equation ?? 'janmahasatian')
+    return weight.kind === 'computed' ? notesOf('weight', weight.notes) : []
+  })
 }
 
 /** What holds for everyone under this model: apparent parameters, assumed numbers, its source's cautions. */
