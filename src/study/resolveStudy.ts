@@ -3,6 +3,7 @@ import { Converter, present } from './converter'
 import type { RegimenFile } from './file/doseSchema'
 import type { StudyFile } from './file/studySchema'
 import { contentHash } from './hash'
+import type { ModelCheck } from './modelCheck'
 import { knownNames } from './nearestName'
 import { below } from './path'
 import type { Problems } from './problems'
@@ -17,7 +18,12 @@ import type { Sampling, Study, StudyRegimen } from './study'
  * A study file, its shape already compared, in canonical units. `model` is absent where it could not be read; whatever
  * does not depend on it is checked all the same. Undefined where anything is wrong.
  */
-export function resolveStudy(file: StudyFile, model: ResolvedModel | undefined, problems: Problems): Study | undefined {
+export function resolveStudy(
+  file: StudyFile,
+  model: ResolvedModel | undefined,
+  modelChecks: readonly ModelCheck[],
+  problems: Problems
+): Study | undefined {
   const convert =
     model === undefined ? new LenientConverter(problems) : new Converter(problems, model.convert.molarMass)
   const sound = <K extends keyof StudyFile & string>(key: K) => (problems.isSound(key) ? file[key] : undefined)
@@ -56,6 +62,7 @@ export function resolveStudy(file: StudyFile, model: ResolvedModel | undefined, 
   return {
     title: file.title ?? model.drugModel.title,
     drugModel: model.drugModel,
+    modelChecks,
     ...patient,
     regimens,
     targets,

@@ -4,6 +4,7 @@ import type { Prescription, SessionLine } from '../pk/prescription'
 import type { Target } from '../pk/target'
 import type { Hours, MilligramsPerLitre } from '../units/canonical'
 import type { Spacing } from '../units/spacing'
+import type { ModelCheck } from './modelCheck'
 
 /** A person from one time on, until the next entry; the first is at 0. Canonical units. */
 export interface PersonStretch {
@@ -17,6 +18,8 @@ export interface PersonStretch {
 export interface Study {
   readonly title: string
   readonly drugModel: DrugModel
+  /** What the model itself says that it must reproduce. */
+  readonly modelChecks: readonly ModelCheck[]
   readonly people: readonly PersonStretch[]
   readonly sessions: readonly SessionLine[]
   readonly regimens: readonly StudyRegimen[]

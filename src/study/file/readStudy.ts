@@ -1,4 +1,5 @@
 import type { Issue } from '../../pk/issue'
+import type { ModelCheck } from '../modelCheck'
 import { Problems } from '../problems'
 import type { ResolvedModel } from '../resolveModel'
 import { resolveStudy } from '../resolveStudy'
@@ -37,16 +38,17 @@ export function readStudy(
   const model = readModelOf(raw, shippedModels, problems)
   checkShape(studySchema(model.own), raw, [], problems)
   const file = raw as StudyFile
-  const study = resolveStudy(file, model.resolved, problems)
+  const study = resolveStudy(file, model.resolved, model.checks, problems)
   return study === undefined ? { ok: false, issues: problems.issues } : { ok: true, study, file }
 }
 
 interface ModelOfStudy {
   readonly own: OwnCovariates
   readonly resolved: ResolvedModel | undefined
+  readonly checks: readonly ModelCheck[]
 }
 
-const NO_MODEL: ModelOfStudy = { own: 'any', resolved: undefined }
+const NO_MODEL: ModelOfStudy = { own: 'any', resolved: undefined, checks: [] }
 
 /** The model that a study names or holds. Its type is tested before its schema, so that no problem in it is hidden. */
 function readModelOf(raw: object, shippedModels: (id: string) => unknown, problems: Problems): ModelOfStudy {
@@ -57,7 +59,7 @@ function readModelOf(raw: object, shippedModels: (id: string) => unknown, proble
   }
   if (typeof model === 'object' && model !== null && !Array.isArray(model)) {
     const read = readModelValue(model, ['model'], problems)
-    return { own: ownCovariates(model), resolved: read?.resolved }
+    return { own: ownCovariates(model), resolved: read?.resolved, checks: read?.checks ?? [] }
   }
   if (typeof model !== 'string') {
     problems.addMalformed(
@@ -76,5 +78,5 @@ function readModelOf(raw: object, shippedModels: (id: string) => unknown, proble
   for (const issue of ofModel.issues) {
     problems.add('model', `the shipped model "${model}" is not valid: ${issue.path}: ${issue.message}`)
   }
-  return { own: ownCovariates(shipped), resolved: read?.resolved }
+  return { own: ownCovariates(shipped), resolved: read?.resolved, checks: read?.checks ?? [] }
 }

@@ -1,0 +1,55 @@
+import type { Finding } from '../patient/findings'
+import type { Course } from '../pk/course'
+import type { DoseOverLimit } from '../pk/doseLimits'
+import type { Study, StudyRegimen } from './study'
+
+/** What must be said of a regimen before its numbers are used: doses over a limit, doses during a session. */
+export function regimenCautions(
+  regimen: StudyRegimen,
+  course: Course,
+  overLimits: readonly DoseOverLimit[]
+): readonly string[] {
+  const cautions: string[] = []
+  for (const over of overLimits) {
+    if (regimen.reasons[over.line] !== undefined) continue
+    cautions.push(
+      `${regimen.name}: dose ${over.number} of line ${over.line + 1} is over the ${over.of} limit of the drug without a reason given (limit: ${over.source})`
+    )
+  }
+  const during = course.administrations.filter(
+    (given) =>
+      !given.missed &&
+      course.sessions.some(
+        (session) =>
+          given.at < session.start + session.duration &&
+          // A bolus at the very start of a session is in it; one at its very end is not.
+          (given.duration > 0 ? given.at + given.duration > session.start : given.at >= session.start)
+      )
+  )
+  if (during.length > 0) {
+    const which = during.length === 1 ? 'a dose overlaps' : `${during.length} doses overlap`
+    cautions.push(`${regimen.name}: ${which} a dialysis session, which removes part of it`)
+  }
+  if (regimen.start === 'steady-state' && course.sessions.length > 0) {
+    cautions.push(`${regimen.name}: the start in steady state is reckoned without dialysis sessions before time 0`)
+  }
+  return cautions
+}
+
+/** All cautions of one study, each once: of the model and patient, of the regimens, of what the arithmetic leaves out. */
+export function studyCautions(
+  study: Study,
+  findings: readonly Finding[],
+  regimens: readonly string[]
+): readonly string[] {
+  const cautions = findings.filter((finding) => finding.severity === 'caution').map((finding) => finding.text)
+  if (study.people.length > 1) {
+    cautions.push('the patient changes in steps at the times written; between them nothing is interpolated')
+  }
+  if (study.targets.some((target) => target.factor !== 1) && study.drugModel.drug.fractionUnbound !== undefined) {
+    cautions.push(
+      `unbound concentrations use a constant free fraction of ${study.drugModel.drug.fractionUnbound}, whatever the level`
+    )
+  }
+  return [...new Set([...cautions, ...regimens])]
+}
