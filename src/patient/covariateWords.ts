@@ -50,22 +50,14 @@ export function symbolOf(name: CovariateName): string {
   return wordsOf(name)?.symbol ?? name
 }
 
-/** UCUM as people write it: `mL/min/1.73 m2`, `years`, `weeks`; a pure number has none. */
-export function unitInWords(unit: string): string {
-  switch (unit) {
-    case '1':
-      return ''
-    case 'a':
-      return 'years'
-    case 'mo':
-      return 'months'
-    case 'wk':
-      return 'weeks'
-    case 'd':
-      return 'days'
-    default:
-      return unit.replace('{1.73_m2}', '1.73 m2')
-  }
+const SPELLED_OUT: Readonly<Record<string, string>> = { a: 'year', mo: 'month', wk: 'week', d: 'day' }
+
+/** UCUM as people write it: `mL/min/1.73 m2`, `years`, `1 week`; a pure number has none. */
+export function unitInWords(unit: string, count = 2): string {
+  if (unit === '1') return ''
+  const word = Object.hasOwn(SPELLED_OUT, unit) ? SPELLED_OUT[unit] : undefined
+  if (word !== undefined) return count === 1 ? word : `${word}s`
+  return unit.replace('{1.73_m2}', '1.73 m2')
 }
 
 /**
@@ -91,11 +83,16 @@ export function significant(value: number, figures: number): string {
   return String(Number(value.toPrecision(figures)))
 }
 
-/** Years; months under two years, days under three months. */
+/** Years from two on; below, whole months or whole days where it is either, else months, and days under three months. */
 function ageInWords(years: number, figures: number): string {
   if (years >= 2 || years < 0) return joined(significant(years, figures), 'years')
-  if (years >= 0.25) return joined(significant(years * 12, figures), 'months')
-  return joined(significant(years * 365.25, figures), 'days')
+  const days = years * 365.25
+  if (!whole(12 * years) && (whole(days) || years < 0.25)) return joined(significant(days, figures), 'days')
+  return years === 0 ? '0 days' : joined(significant(12 * years, figures), 'months')
+}
+
+function whole(value: number): boolean {
+  return Math.abs(value - Math.round(value)) <= 1e-9 * Math.max(1, Math.abs(value))
 }
 
 function joined(number: string, unit: string): string {

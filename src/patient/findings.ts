@@ -98,7 +98,7 @@ function validNotKnown(drugModel: DrugModel, person: Person): readonly Finding[]
 }
 
 /** Notes on an estimate as findings. */
-export function notesOf(name: CovariateName, notes: readonly Note[]): readonly Finding[] {
+function notesOf(name: CovariateName, notes: readonly Note[]): readonly Finding[] {
   return notes.map((note) => ({
     kind: note.kind,
     severity: SEVERITY_OF_NOTE[note.kind],

@@ -19,9 +19,9 @@ export function usesOf(drugModel: DrugModel): ReadonlyMap<CovariateName, readonl
 
 /**
  * The covariates from which a computed one follows in this model, directly or through others. A covariate given directly no
- * longer depends on them.
+ * longer depends on them. Where the model names no equation, whatever any equation would take.
  */
-export function inputsOf(name: ComputedCovariate, drugModel: DrugModel): readonly CovariateName[] {
+export function inputsOf(name: ComputedCovariate, drugModel: Pick<DrugModel, 'covariates'>): readonly CovariateName[] {
   switch (name) {
     case 'bodyMassIndex':
     case 'bodySurfaceArea':
@@ -43,7 +43,7 @@ export function inputsOf(name: ComputedCovariate, drugModel: DrugModel): readonl
     case 'estimatedGfr':
       switch (drugModel.covariates.estimatedGfr?.equation) {
         case undefined:
-          return []
+          return ['sex', 'age', 'postnatalAge', 'height', 'serumCreatinine', 'cystatinC']
         case 'bedside-schwartz':
           return ['age', 'postnatalAge', 'height', 'serumCreatinine']
         case 'ckd-epi-2021-creatinine-cystatin':
@@ -114,9 +114,17 @@ export function covariatesFor(
   for (const [name, who] of missing)
     issues.push({
       path: `${path}.${name}`,
-      message: `${nameInWords(name)} is missing: ${who.join('; ')}${asked(name, drugModel)}`
+      message: `${nameInWords(name)} is missing: ${who.join('; ')}${alternatives(name)}${asked(name, drugModel)}`
     })
   return { covariates, issues }
+}
+
+/** Two of the three ages of a neonate give the third. */
+function alternatives(name: CovariateName): string {
+  if (name === 'postmenstrualAge') return '; gestational and postnatal age together give it'
+  if (name === 'gestationalAge') return '; postmenstrual and postnatal age together give it'
+  if (name === 'postnatalAge') return '; gestational and postmenstrual age together give it'
+  return ''
 }
 
 /** The model's own question for a covariate that it declares, or its categories. */
@@ -143,7 +151,7 @@ function unknownCategory(covariate: Covariate, drugModel: DrugModel): string | u
 function weightInputs(word: string | undefined): readonly CovariateName[] {
   switch (word) {
     case undefined:
-      return []
+      return ['weight', 'height', 'idealWeight', 'adjustedWeight', 'leanWeight']
     case 'actual':
       return ['weight']
     case 'ideal':

@@ -1,5 +1,6 @@
 import { describe, expect, test } from 'vitest'
 import { ageIssues, agesOf, WEEKS_PER_YEAR } from '../../src/patient/ages'
+import { valueInWords } from '../../src/patient/covariateWords'
 import type { Person } from '../../src/patient/person'
 import { expectWithin } from '../expectWithin'
 
@@ -56,4 +57,18 @@ describe('three ages must agree within a week', () => {
     expect(ageIssues(born({ gestationalAge: 40, postmenstrualAge: 38 }), 'patient')).toHaveLength(1)
     expect(ageIssues(born({ age: 2, postmenstrualAge: 40 }), 'patient')).toHaveLength(1)
   })
+})
+
+describe('ages read as people say them', () => {
+  test.each([
+    [71, '71 years'],
+    [2, '2 years'],
+    [1.5, '18 months'],
+    [0.5, '6 months'],
+    [days(200), '200 days'],
+    [days(3), '3 days'],
+    [days(2.5), '2.5 days'],
+    [0.3456, '4.15 months'],
+    [0, '0 days']
+  ])('%d a is %s', (years, words) => expect(valueInWords('age', years, { declared: {} })).toBe(words))
 })

@@ -105,6 +105,30 @@ describe('what is missing is named with who needs it, and nothing is put in its 
     ])
   })
 
+  test('a postmenstrual age, with the two ages that would give it', () => {
+    const maturing = parameter('CL', 'L/h', [
+      {
+        value: 5,
+        factors: [
+          {
+            kind: 'maturation',
+            covariate: 'postmenstrualAge',
+            in: { unit: 'wk', times: 1, per: 1 },
+            half: 47.7,
+            exponent: 3.4
+          }
+        ]
+      }
+    ])
+    const model = { ...pw101, parameters: [maturing, ...pw101.parameters.slice(1)] }
+    expect(issuesOf(model, woman)).toEqual([
+      {
+        path: 'patient.postmenstrualAge',
+        message: 'postmenstrual age is missing: CL needs it; gestational and postnatal age together give it'
+      }
+    ])
+  })
+
   test('several at once, each on a line of its own', () => {
     const nobody: Person = { numbers: {}, categories: {}, renalReplacement: 'none' }
     expect(issuesOf(pw101, nobody).map((issue) => issue.path)).toEqual([

@@ -103,6 +103,19 @@ describe('a relation prints as an equation', () => {
     [[{ value: 5, factors: [power] }], 'X = 5 x (weight / 70 kg)^0.75'],
     [[{ value: 1, factors: [linear] }], 'X = (1 - 0.01 x (age - 40 years))'],
     [[{ value: 2, factors: [exponential] }], 'X = 2 x exp(0.02 x (age - 40 years))'],
+    [
+      [{ value: 2, factors: [{ ...exponential, reference: 0, rate: -1 / 3 }] }],
+      'X = 2 x exp(-0.333333 x (age in years))'
+    ],
+    [
+      [
+        {
+          value: 2,
+          factors: [{ ...power, covariate: 'daysAfterInjury', in: { ...kg, unit: 'd' }, reference: 1, exponent: 1 }]
+        }
+      ],
+      'X = 2 x (daysAfterInjury / 1 day)'
+    ],
     [[{ value: 2, factors: [maturation] }], 'X = 2 x (PMA^3.4 / (PMA^3.4 + (47.7 weeks)^3.4))'],
     [[{ value: 2, factors: [category, step] }], 'X = 2 x (sex: female 0.8, male 1) x (0.5 if age < 18 years, else 1)'],
     [
