@@ -15,8 +15,10 @@ export class Problems {
     return [...this.#issues.values()]
   }
 
+  /** What stands in the file is quoted in messages; each stays on one line of reasonable length all the same. */
   add(path: string, message: string): void {
-    this.#issues.set(`${path}\n${message}`, { path, message })
+    const issue = { path: oneLine(path), message: oneLine(message) }
+    this.#issues.set(`${issue.path}\n${issue.message}`, issue)
   }
 
   /** Note that the value at this place does not have the shape of its type, and say why. */
@@ -44,4 +46,14 @@ export class Problems {
     }
     return true
   }
+}
+
+const LONGEST = 600
+
+function oneLine(text: string): string {
+  // biome-ignore lint/suspicious/noControlCharactersInRegex: they are what is taken out.
+  const line = text.replaceAll(/[\u0000-\u001f\u007f-\u009f\u2028\u2029]/g, (character) => {
+    return `\\u${character.charCodeAt(0).toString(16).padStart(4, '0')}`
+  })
+  return line.length > LONGEST ? `${line.slice(0, LONGEST - 3)}...` : line
 }

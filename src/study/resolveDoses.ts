@@ -51,10 +51,8 @@ export function checkNames(raw: unknown, path: string, context: DoseContext): vo
   if (typeof product === 'string' && !known.includes(product)) {
     problems.add(below(path, 'product'), `the model's drug has no product "${product}"; ${knownNames(product, known)}`)
   } else if (product === undefined && known.length > 0) {
-    problems.add(
-      below(path, 'product'),
-      `say which product is dosed, since ${known.length === 1 ? 'it is' : 'they are'} not the moiety itself; ${knownNames('', known)}`
-    )
+    const listed = known.map((name) => `"${name}"`).join(' or ')
+    problems.add(below(path, 'product'), `say which product of the drug is dosed: ${listed}`)
   }
 }
 

@@ -1,13 +1,13 @@
-import type { CovariateUnit, Factor, Parameter, Term } from '../patient/drugModel'
+import type { Factor, Parameter, Term } from '../patient/drugModel'
 import { isUnitOfActivity } from '../units/nearestUnit'
-import type { Quantity } from '../units/quantity'
 import { KIND_NAMES, type Kind, unitOf } from '../units/unitTable'
 import type { Converter } from './converter'
-import type { FactorFile, ModelFile, ParameterFile } from './file/modelSchema'
-import { type Covariate, covariateUnit } from './knownCovariates'
+import type { ModelFile, ParameterFile } from './file/modelSchema'
+import type { Covariate } from './knownCovariates'
 import type { ParameterUse } from './modelNames'
 import { knownNames } from './nearestName'
 import { below } from './path'
+import { resolveFactor } from './resolveFactor'
 import { open } from './soundMembers'
 
 /** What a parameter that nothing uses may be. */
@@ -119,106 +119,12 @@ function resolveTerm(term: ParameterFile['typical'][number], at: string, request
   if (own !== undefined) reasons.push(own.because)
   for (const [i, factor] of (term.factors ?? []).entries()) {
     const path = below(below(at, 'factors'), i)
-    const resolved = resolveFactor(factor, path, request)
+    const resolved = resolveFactor(factor, path, request.covariates, request.convert.problems)
     if (resolved !== undefined) factors.push(resolved)
     const assumed = assumption(factor, path, request.convert).assumed
     if (assumed !== undefined) reasons.push(assumed.because)
   }
   return { value: term.value, factors, ...(reasons.length > 0 && { assumed: { because: reasons.join('; ') } }) }
-}
-
-function resolveFactor(factor: FactorFile, at: string, request: ParametersRequest): Factor | undefined {
-  const { problems } = request.convert
-  const path = below(at, 'covariate')
-  const covariate = request.covariates.get(factor.covariate)
-  if (covariate === undefined) {
-    const hint =
-      factor.covariate === 'dosingWeight'
-        ? 'the dosing weight never enters a covariate relation; use "weight"'
-        : `no covariate is called "${factor.covariate}"; ${knownNames(factor.covariate, [...request.covariates.keys()])}; a model declares its own under "covariates"`
-    problems.add(path, hint)
-    return undefined
-  }
-  if (factor.kind === 'category') {
-    if (covariate.sort !== 'category') {
-      problems.add(path, `"${factor.covariate}" is a number, a factor "category" needs a covariate with categories`)
-      return undefined
-    }
-    return resolveCategory(factor, covariate.categories, at, request)
-  }
-  if (covariate.sort === 'category') {
-    problems.add(path, `"${factor.covariate}" has categories; use a factor "category"`)
-    return undefined
-  }
-  const named = (key: string, quantity: Quantity): [number, CovariateUnit] | undefined => {
-    const unit = covariateUnit(covariate, quantity.unit, below(at, key), problems)
-    return unit === undefined ? undefined : [quantity.value, unit]
-  }
-  const { covariate: name } = factor
-  switch (factor.kind) {
-    case 'power': {
-      const reference = named('reference', factor.reference)
-      return (
-        reference && {
-          kind: 'power',
-          covariate: name,
-          reference: reference[0],
-          in: reference[1],
-          exponent: factor.exponent
-        }
-      )
-    }
-    case 'linear': {
-      const reference = named('reference', factor.reference)
-      return (
-        reference && { kind: 'linear', covariate: name, reference: reference[0], in: reference[1], slope: factor.slope }
-      )
-    }
-    case 'exponential': {
-      const reference = named('reference', factor.reference)
-      return (
-        reference && {
-          kind: 'exponential',
-          covariate: name,
-          reference: reference[0],
-          in: reference[1],
-          rate: factor.rate
-        }
-      )
-    }
-    case 'maturation': {
-      const half = named('half', factor.half)
-      return half && { kind: 'maturation', covariate: name, half: half[0], in: half[1], exponent: factor.exponent }
-    }
-    case 'step': {
-      const place = named('at', factor.at)
-      return (
-        place && { kind: 'step', covariate: name, at: place[0], in: place[1], below: factor.below, from: factor.from }
-      )
-    }
-  }
-}
-
-function resolveCategory(
-  factor: Extract<FactorFile, { kind: 'category' }>,
-  categories: readonly string[],
-  at: string,
-  { convert }: ParametersRequest
-): Factor {
-  const path = below(at, 'values')
-  for (const key of Object.keys(factor.values)) {
-    if (!categories.includes(key)) {
-      convert.problems.add(
-        below(path, key),
-        `"${factor.covariate}" has no category "${key}"; ${knownNames(key, categories)}`
-      )
-    }
-  }
-  const missing = categories.filter((category) => !Object.hasOwn(factor.values, category))
-  if (missing.length > 0) {
-    convert.problems.add(path, `a value is missing for ${missing.map((category) => `"${category}"`).join(', ')}`)
-  }
-  return { kind: 'category', covariate: factor.covariate, values: factor.values }
 }
 
 /** A volume that is 0 or less whoever the patient is; others come out with the individual. */

@@ -4,7 +4,7 @@ import { type Converter, present } from './converter'
 import type { ChangeFile, PatientFile } from './file/patientSchema'
 import { COMPUTED } from './knownCovariates'
 import { below } from './path'
-import type { ResolvedModel } from './resolveModel'
+import { covariatesUsed, type ResolvedModel } from './resolveModel'
 import { inputsOfComputed, NOBODY, type PersonContext, resolvePerson } from './resolvePerson'
 import { open } from './soundMembers'
 import type { PersonStretch } from './study'
@@ -57,7 +57,7 @@ export function resolvePatient(
       ...present('count', session.count)
     }
   })
-  checkRenal(people, sessions.length > 0, path, model, convert)
+  if (sessions.length > 0) checkSessions(people, path, model, convert)
   return { people, sessions }
 }
 
@@ -80,35 +80,23 @@ function checkGivenDirectly(change: ChangeFile, at: string, given: Set<string>, 
 
 const RENAL = ['creatinineClearance', 'estimatedGfr', 'absoluteGfr'] as const
 
-/** On renal replacement no formula says how the kidneys clear: residual clearance is given directly. */
-function checkRenal(
+/** A patient on dialysis has no clearance that a formula could give; without saying so, sessions must not meet one. */
+function checkSessions(
   people: readonly PersonStretch[],
-  hasSessions: boolean,
   path: string,
   { drugModel }: ResolvedModel,
   { problems }: Converter
 ): void {
-  const used = new Set<string>(drugModel.valid.map((range) => range.covariate))
-  for (const parameter of drugModel.parameters) {
-    for (const term of parameter.typical) for (const factor of term.factors) used.add(factor.covariate)
-  }
-  for (const stretch of people) {
-    const has = (name: string) => Object.hasOwn(stretch.person.numbers, name)
+  const used = covariatesUsed(drugModel)
+  for (const { person } of people) {
+    if (person.renalReplacement !== 'none') continue
+    const given = (name: string) => Object.hasOwn(person.numbers, name)
     for (const name of RENAL) {
-      const computed = !has(name) && !(name === 'absoluteGfr' && has('estimatedGfr'))
-      if (!used.has(name) || !computed) continue
-      const { renalReplacement } = stretch.person
-      if (renalReplacement !== 'none') {
-        problems.add(
-          below(stretch.path, name),
-          `the model uses ${name}, which is not computed on ${renalReplacement} renal replacement; give the residual ${name} directly`
-        )
-      } else if (hasSessions) {
-        problems.add(
-          below(path, 'sessions'),
-          `with sessions, "renalReplacement" must be "intermittent" or "continuous" and ${name}, which the model uses, be given directly`
-        )
-      }
+      if (!used.has(name) || given(name) || (name === 'absoluteGfr' && given('estimatedGfr'))) continue
+      problems.add(
+        below(path, 'sessions'),
+        `with sessions, "renalReplacement" must be "intermittent" or "continuous", and ${name}, which the model would compute, be given directly`
+      )
     }
   }
 }

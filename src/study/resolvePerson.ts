@@ -36,11 +36,11 @@ export function resolvePerson(file: Partial<PersonFile>, path: string, before: P
       if (category !== undefined) categories[name] = category
       continue
     }
-    const problem = covariate.sort === 'own' ? ownProblem(raw, name, covariate.unit) : undefined
+    const asked = { sign: 'any', exampleUnits: covariate.sort === 'own' ? [covariate.unit] : [] } as const
+    const problem = covariate.sort === 'own' ? quantityProblem(raw, name, asked) : undefined
     if (problem !== undefined) problems.add(at, problem)
     else numbers[name] = covariateValue(covariate, raw as Quantity, at, problems)
   }
-  checkAges(numbers, path, problems)
   const sex = problems.isOpen(below(path, 'sex')) ? (file.sex ?? before.sex) : before.sex
   const replacement = problems.isOpen(below(path, 'renalReplacement')) ? file.renalReplacement : undefined
   return {
@@ -65,26 +65,6 @@ function ownCategory(
   const typed = typeof raw === 'string' ? raw : ''
   problems.add(at, `${name} must be one of its categories; ${knownNames(typed, categories)}`)
   return undefined
-}
-
-function ownProblem(raw: unknown, name: string, unit: string): string | undefined {
-  const problem = quantityProblem(raw, name, undefined, 'any')
-  return problem === undefined
-    ? undefined
-    : `${problem.replace(/(; for example|, for example|;? for example) .*/, '')}; its unit is "${unit}"`
-}
-
-/** Gestational + postnatal = postmenstrual age, within a week where all three are given. */
-function checkAges(numbers: Readonly<Record<string, number | undefined>>, path: string, problems: Problems): void {
-  const { gestationalAge, postnatalAge, postmenstrualAge } = numbers
-  if (gestationalAge === undefined || postnatalAge === undefined || postmenstrualAge === undefined) return
-  const sum = gestationalAge + (postnatalAge * 1461) / 28
-  if (Math.abs(sum - postmenstrualAge) > 1 + 1e-9) {
-    problems.add(
-      below(path, 'postmenstrualAge'),
-      `gestational + postnatal age is ${Number(sum.toPrecision(4))} wk, but postmenstrualAge says ${Number(postmenstrualAge.toPrecision(4))} wk; they must agree within a week`
-    )
-  }
 }
 
 /** The covariates that each computed one is computed from, by the model's own choice of equation where it has one. */

@@ -32,11 +32,18 @@ export function resolveStructure(file: ModelFile, path: string, problems: Proble
   }
   return {
     compartments: [...names.compartments.values()],
-    transfers,
+    transfers: inOrderOfSites(transfers, [...names.compartments.keys()]),
     routes: resolveRoutes(file, path, names),
     observations: resolveObservations(file, path, names),
     uses: names.uses
   }
+}
+
+/** Effect transfers change places among themselves so that effect sites count in the order of the compartments. */
+function inOrderOfSites(transfers: readonly DrugTransfer[], order: readonly string[]): DrugTransfer[] {
+  const effects = transfers.filter((transfer) => transfer.kind === 'effect')
+  effects.sort((a, b) => order.indexOf(a.to) - order.indexOf(b.to))
+  return transfers.map((transfer) => (transfer.kind === 'effect' ? (effects.shift() ?? transfer) : transfer))
 }
 
 function checkObserved(names: ModelNames, path: string, problems: Problems): void {

@@ -1,3 +1,4 @@
+import { tooManyRows } from '../pk/profileTimes'
 import { multipleOf } from '../units/spacing'
 import { Converter, present } from './converter'
 import type { RegimenFile } from './file/doseSchema'
@@ -95,7 +96,10 @@ function resolveSampling(sampling: StudyFile['sampling'], convert: Converter): S
     if (hours > until) convert.problems.add(at, 'this time is after sampling.until, where the study ends')
     return hours
   })
-  return { until, every: convert.spacing(sampling.every, 'sampling.every'), also }
+  const resolved = { until, every: convert.spacing(sampling.every, 'sampling.every'), also }
+  const tooMany = tooManyRows(resolved, until)
+  if (tooMany !== undefined) convert.problems.add(tooMany.path, tooMany.message)
+  return resolved
 }
 
 function resolveRegimens(file: StudyFile, model: ResolvedModel | undefined, convert: Converter): StudyRegimen[] {

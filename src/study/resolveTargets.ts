@@ -6,6 +6,7 @@ import { type Converter, present } from './converter'
 import type { TargetFile } from './file/targetSchema'
 import { knownNames } from './nearestName'
 import { below } from './path'
+import type { Problems } from './problems'
 
 /** What targets refer to; the model is absent where it could not be read. */
 export interface TargetContext {
@@ -87,6 +88,13 @@ function checkLimits(target: TargetFile, path: string, { problems }: Converter):
         problems.add(below(path, 'low'), `a target "${kind}" has no low limit; use "window" or "time-above"`)
       break
   }
+  checkKeysOfKind(target, path, problems)
+}
+
+/** Keys that only some kinds of target take. */
+function checkKeysOfKind(target: TargetFile, path: string, problems: Problems): void {
+  const { kind, timesMic } = target
+  const has = (value: unknown) => value !== undefined
   const isTime = kind === 'time-above' || kind === 'time-below'
   if (has(timesMic) && !isTime) {
     problems.add(
@@ -166,7 +174,7 @@ function resolveSignal(target: TargetFile, path: string, { drugModel, convert }:
   return { kind: 'observed' }
 }
 
+/** In the order of the transfers, which `resolveModel` has put in that of the compartments. */
 function effectSiteIds(drugModel: DrugModel): string[] {
-  const targets = new Set(drugModel.transfers.map((transfer) => (transfer.kind === 'effect' ? transfer.to : undefined)))
-  return drugModel.compartments.map(({ id }) => id).filter((id) => targets.has(id))
+  return drugModel.transfers.flatMap((transfer) => (transfer.kind === 'effect' ? [transfer.to] : []))
 }

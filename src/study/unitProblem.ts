@@ -35,25 +35,33 @@ const EXAMPLES: Readonly<Record<Kind, Quantity>> = {
   molarMass: { value: 450, unit: 'g/mol' }
 }
 
+/** What a quantity should be: of a kind, or of one that other parts of the file decide, with the units of an example. */
+export interface QuantityAsked {
+  readonly kind?: Kind
+  readonly exampleUnits?: readonly string[]
+  readonly sign: Sign
+}
+
 /**
- * What is wrong with a value that should be a quantity of the kind, and what would be right; undefined where nothing is.
+ * What is wrong with a value that should be a quantity, and what would be right; undefined where nothing is.
  * `name` is what the file calls it: "amount needs a unit, for example { "value": 500, "unit": "mg" }".
  */
-export function quantityProblem(raw: unknown, name: string, kind: Kind | undefined, sign: Sign): string | undefined {
-  const example = kind === undefined ? EXAMPLES.amount : EXAMPLES[kind]
-  if (raw === undefined) return `${name} is missing; for example ${show(example)}`
-  if (typeof raw === 'number') return `${name} needs a unit, for example ${show({ ...example, value: raw })}`
+export function quantityProblem(raw: unknown, name: string, asked: QuantityAsked): string | undefined {
+  const { kind, sign } = asked
+  const show = (typed?: number) => examplesOf(asked, typed)
+  if (raw === undefined) return `${name} is missing; for example ${show()}`
+  if (typeof raw === 'number') return `${name} needs a unit, for example ${show(raw)}`
   if (typeof raw !== 'object' || raw === null || Array.isArray(raw)) {
-    return `${name} must be a value with its unit, for example ${show(example)}`
+    return `${name} must be a value with its unit, for example ${show()}`
   }
   const { value, unit, ...rest } = raw as Record<string, unknown>
   const extra = Object.keys(rest).at(0)
   if (extra !== undefined) return `unknown key "${extra}" in ${name}; a quantity has "value" and "unit" only`
-  if (value === undefined) return `${name} needs a value, for example ${show(example)}`
-  if (typeof value !== 'number') return `the value of ${name} must be a number, for example ${show(example)}`
+  if (value === undefined) return `${name} needs a value, for example ${show()}`
+  if (typeof value !== 'number') return `the value of ${name} must be a number, for example ${show()}`
   if (!Number.isFinite(value)) return `the value of ${name} must be finite`
-  if (unit === undefined) return `${name} needs a unit, for example ${show({ ...example, value })}`
-  if (typeof unit !== 'string') return `the unit of ${name} must be text, for example ${show({ ...example, value })}`
+  if (unit === undefined) return `${name} needs a unit, for example ${show(value)}`
+  if (typeof unit !== 'string') return `the unit of ${name} must be text, for example ${show(value)}`
   const problems = [kind === undefined ? undefined : unitProblem(unit, kind), signProblem({ value, unit }, name, sign)]
   return problems.filter((problem) => problem !== undefined).join('; ') || undefined
 }
@@ -95,6 +103,10 @@ function signProblem(quantity: Quantity, name: string, sign: Sign): string | und
   return undefined
 }
 
-function show(quantity: Quantity): string {
-  return `{ "value": ${JSON.stringify(quantity.value)}, "unit": ${JSON.stringify(quantity.unit)} }`
+/** Examples of what is asked, with the number that was typed where there is one. */
+function examplesOf({ kind, exampleUnits }: QuantityAsked, typed?: number): string {
+  const example = EXAMPLES[kind ?? 'amount']
+  return (exampleUnits ?? [example.unit])
+    .map((unit) => `{ "value": ${typed ?? example.value}, "unit": ${JSON.stringify(unit)} }`)
+    .join(' or ')
 }

@@ -1,23 +1,26 @@
 import { z } from 'zod'
+import type { Sign } from '../unitProblem'
 import { quantity, quantityOfSomeKind } from './quantitySchema'
 import { name, share } from './textSchema'
 
-const bounds = { low: quantityOfSomeKind().optional(), high: quantityOfSomeKind().optional() }
+const ofCovariate = (sign?: Sign) => quantityOfSomeKind(['kg', 'mL/min'], sign)
+
+const bounds = { low: ofCovariate().optional(), high: ofCovariate().optional() }
 
 const distribution = z.discriminatedUnion('kind', [
   z.strictObject({
     kind: z.literal('log-normal'),
-    median: quantityOfSomeKind('positive'),
+    median: ofCovariate('positive'),
     sd: z.number().min(0),
     ...bounds
   }),
   z.strictObject({
     kind: z.literal('normal'),
-    mean: quantityOfSomeKind(),
-    sd: quantityOfSomeKind('not negative'),
+    mean: ofCovariate(),
+    sd: ofCovariate('not negative'),
     ...bounds
   }),
-  z.strictObject({ kind: z.literal('uniform'), low: quantityOfSomeKind(), high: quantityOfSomeKind() })
+  z.strictObject({ kind: z.literal('uniform'), low: ofCovariate(), high: ofCovariate() })
 ])
 
 /** A distribution, or the share of each category. */
@@ -54,7 +57,7 @@ export const plan = z.strictObject({
   strengths: z.array(quantity('amount')).min(1),
   intervals: z.array(quantity('time')).min(1),
   over: z.array(quantity('time')).optional(),
-  loading: z.enum(['allowed', 'never', 'required']).optional(),
+  loading: z.literal('allowed').optional(),
   largestDose: quantity('amount').optional(),
   largestDaily: quantity('amount').optional(),
   largestRate: quantity('doseRate').optional(),

@@ -1,39 +1,42 @@
 import { z } from 'zod'
+import type { Sign } from '../unitProblem'
 import { dose, weightWord } from './doseSchema'
 import { checkedPersonSchema, type OwnCovariates } from './patientSchema'
 import { quantity, quantityOfSomeKind } from './quantitySchema'
-import { name, prose } from './textSchema'
+import { name, prose, title } from './textSchema'
 
 /** A number that was not read in the source, and why it stands there all the same. */
 const assumable = { assumed: z.literal(true).optional(), because: prose.optional() }
 
 const covariate = name
+/** A value of whatever covariate stands beside it. */
+const ofCovariate = (sign?: Sign) => quantityOfSomeKind(['kg', 'mL/min'], sign)
 const factor = z.discriminatedUnion('kind', [
   z.strictObject({
     kind: z.literal('power'),
     covariate,
-    reference: quantityOfSomeKind('positive'),
+    reference: ofCovariate('positive'),
     exponent: z.number(),
     ...assumable
   }),
   z.strictObject({
     kind: z.literal('linear'),
     covariate,
-    reference: quantityOfSomeKind(),
+    reference: ofCovariate(),
     slope: z.number(),
     ...assumable
   }),
   z.strictObject({
     kind: z.literal('exponential'),
     covariate,
-    reference: quantityOfSomeKind(),
+    reference: ofCovariate(),
     rate: z.number(),
     ...assumable
   }),
   z.strictObject({
     kind: z.literal('maturation'),
     covariate,
-    half: quantityOfSomeKind('positive'),
+    half: ofCovariate('positive'),
     exponent: z.number().gt(0),
     ...assumable
   }),
@@ -41,7 +44,7 @@ const factor = z.discriminatedUnion('kind', [
   z.strictObject({
     kind: z.literal('step'),
     covariate,
-    at: quantityOfSomeKind(),
+    at: ofCovariate(),
     below: z.number(),
     from: z.number(),
     ...assumable
@@ -65,8 +68,8 @@ const parameter = z.strictObject({
 
 const range = z.strictObject({
   covariate,
-  low: quantityOfSomeKind().optional(),
-  high: quantityOfSomeKind().optional(),
+  low: ofCovariate().optional(),
+  high: ofCovariate().optional(),
   categories: z.array(name).min(1).optional()
 })
 
@@ -84,7 +87,7 @@ const drug = z.strictObject({
     .array(
       z.strictObject({
         of: z.enum(['single', 'daily', 'rate', 'total', 'step']),
-        value: quantityOfSomeKind('positive'),
+        value: quantityOfSomeKind(['mg', 'mg/h'], 'positive'),
         product: name.optional(),
         source: prose
       })
@@ -200,7 +203,7 @@ function check(own: OwnCovariates) {
     patient: checkedPersonSchema(own),
     doses: z.array(dose).min(1).optional(),
     at: quantity('time', 'not negative').optional(),
-    expected: quantityOfSomeKind(),
+    expected: quantityOfSomeKind(['h', 'mg/L']),
     relativeTolerance: z.number().gt(0).max(1),
     from: z.enum(['printed in the source', 'closed form', 'independent code'])
   })
@@ -213,7 +216,7 @@ export function modelSchema(own: OwnCovariates) {
     format: z.literal('phasewise-model'),
     version: z.literal(1),
     id: name,
-    title: prose,
+    title,
     drug,
     apparent: z.boolean().optional(),
     source,

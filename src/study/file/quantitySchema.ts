@@ -1,13 +1,7 @@
 import { z } from 'zod'
 import type { Quantity } from '../../units/quantity'
-import { type Kind, unitsOf } from '../../units/unitTable'
-import { quantityProblem, type Sign } from '../unitProblem'
-
-/** What is asked of a quantity; without a kind the unit is checked later, where its kind is known. */
-export interface QuantityAsked {
-  readonly kind: Kind | undefined
-  readonly sign: Sign
-}
+import { type Kind, unitOf, unitsOf } from '../../units/unitTable'
+import { listed, type QuantityAsked, quantityProblem, type Sign } from '../unitProblem'
 
 const byName = new Map<string, z.ZodType<Quantity>>()
 
@@ -16,9 +10,12 @@ export function quantity(kind: Kind, sign: Sign = 'positive'): z.ZodType<Quantit
   return shared(`${kind}-${sign.replace(' ', '-')}`, { kind, sign })
 }
 
-/** A value with its unit, whose kind depends on other parts of the file. */
-export function quantityOfSomeKind(sign: Sign = 'any'): z.ZodType<Quantity> {
-  return shared(`of-some-kind-${sign.replace(' ', '-')}`, { kind: undefined, sign })
+/** A value with its unit, whose kind depends on other parts of the file and is checked later; with units to show in an example. */
+export function quantityOfSomeKind(exampleUnits: readonly string[], sign: Sign = 'any'): z.ZodType<Quantity> {
+  return shared(
+    `for-example-${exampleUnits.join('-or-').replaceAll(/[^A-Za-z0-9-]/g, '_')}-${sign.replace(' ', '-')}`,
+    { exampleUnits, sign }
+  )
 }
 
 /** One schema for each kind and sign, so that the JSON Schema defines each once. */
@@ -28,12 +25,28 @@ function shared(name: string, asked: QuantityAsked): z.ZodType<Quantity> {
   const schema = z
     .custom<Quantity>()
     .superRefine((raw, context) => {
-      if (quantityProblem(raw, 'it', asked.kind, asked.sign) === undefined) return
+      if (quantityProblem(raw, 'it', asked) === undefined) return
       context.addIssue({ code: 'custom', params: { quantity: asked }, input: raw })
     })
     .meta({ id: `quantity-${name}`, ...jsonSchemaOf(asked) })
   byName.set(name, schema)
   return schema
+}
+
+/** The code of a unit of the kind by itself, as a display setting holds it. */
+export function unitCode(kind: Kind): z.ZodType<string> {
+  return z
+    .custom<string>()
+    .superRefine((raw, context) => {
+      if (typeof raw === 'string' && unitOf(kind, raw) !== undefined) return
+      context.addIssue({
+        code: 'custom',
+        params: { unitOf: kind },
+        input: raw,
+        message: `must be one of ${listed(kind)}`
+      })
+    })
+    .meta({ type: 'string', enum: unitsOf(kind).map(({ code }) => code) })
 }
 
 function jsonSchemaOf({ kind, sign }: QuantityAsked): Record<string, unknown> {

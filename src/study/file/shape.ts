@@ -1,9 +1,9 @@
 import { z } from 'zod'
+import type { Kind } from '../../units/unitTable'
 import { nearestName } from '../nearestName'
 import { formatPath, type Step } from '../path'
 import type { Problems } from '../problems'
-import { quantityProblem } from '../unitProblem'
-import type { QuantityAsked } from './quantitySchema'
+import { type QuantityAsked, quantityProblem, unitProblem } from '../unitProblem'
 
 // A strict content security policy forbids the code that zod would otherwise compile.
 z.config({ jitless: true })
@@ -26,17 +26,34 @@ function knownKeysOf(issue: z.core.$ZodRawIssue): string | undefined {
 
 function report(issue: z.core.$ZodIssue, at: readonly Step[], problems: Problems): void {
   const steps = [...at, ...issue.path.map((step) => (typeof step === 'symbol' ? String(step) : step))]
-  if (issue.code !== 'unrecognized_keys') {
+  const branch = issue.code === 'invalid_union' ? likeliest(issue) : undefined
+  if (branch !== undefined) {
+    for (const inner of branch) report(inner, steps, problems)
+  } else if (issue.code === 'unrecognized_keys') {
+    const known = issue.message.split('\n')
+    for (const key of issue.keys) {
+      const message = `unknown key "${key}"; the nearest known key is "${nearestName(key, known)}"`
+      problems.add(formatPath([...steps, key]), message)
+    }
+  } else {
     problems.addMalformed(steps, messageOf(issue, nameOf(steps)))
-    return
   }
-  const known = issue.message.split('\n')
-  for (const key of issue.keys) {
-    problems.add(
-      formatPath([...steps, key]),
-      `unknown key "${key}"; the nearest known key is "${nearestName(key, known)}"`
-    )
-  }
+}
+
+/** Of alternatives that all failed, the problems of the one that was meant: its type is right, and its `kind` is there. */
+function likeliest(issue: z.core.$ZodIssueInvalidUnion): readonly z.core.$ZodIssue[] | undefined {
+  return issue.errors.find((branch) =>
+    branch.every((inner) => {
+      const wrongType = inner.code === 'invalid_type' && inner.path.length === 0
+      return !wrongType && !(inner.code === 'invalid_union' && kindOf(inner) === undefined)
+    })
+  )
+}
+
+/** What stands where a union looks for its kind. */
+function kindOf({ input, discriminator }: z.core.$ZodIssueInvalidUnion): unknown {
+  if (typeof input !== 'object' || input === null || discriminator === undefined) return undefined
+  return (input as Record<string, unknown>)[discriminator]
 }
 
 /** What the value at a place is called in its own file: its key, or the key of the list it stands in. */
@@ -51,20 +68,19 @@ function messageOf(issue: z.core.$ZodIssue, name: string): string {
   switch (issue.code) {
     case 'custom': {
       const asked = issue.params?.quantity as QuantityAsked | undefined
-      return (asked && quantityProblem(input, name, asked.kind, asked.sign)) ?? issue.message
+      if (asked !== undefined) return quantityProblem(input, name, asked) ?? issue.message
+      const kind = issue.params?.unitOf as Kind | undefined
+      if (kind !== undefined && typeof input === 'string') return unitProblem(input, kind) ?? issue.message
+      return `${name} ${issue.message}`
     }
     case 'invalid_type':
       if (input === undefined) return `${name} is missing; it must be ${EXPECTED[issue.expected] ?? issue.expected}`
       return `${name} must be ${EXPECTED[issue.expected] ?? issue.expected}, got ${describe(input)}`
     case 'invalid_value':
-      return oneOf(name, input, issue.values.map(String))
+      return oneOf(name, input, issue.values)
     case 'invalid_union':
-      if (issue.discriminator === undefined || typeof input !== 'object' || input === null) break
-      return oneOf(
-        name,
-        (input as Record<string, unknown>)[issue.discriminator],
-        ((issue as { options?: unknown[] }).options ?? []).map(String)
-      )
+      if (issue.discriminator === undefined) break
+      return oneOf(name, kindOf(issue), (issue as { options?: unknown[] }).options ?? [])
     case 'too_small':
       if (issue.origin === 'array') return `${name} needs at least ${issue.minimum}, got ${lengthOf(input)}`
       if (issue.origin === 'string') return `${name} must not be empty`
@@ -90,11 +106,11 @@ const EXPECTED: Readonly<Record<string, string>> = {
   tuple: 'a list in brackets'
 }
 
-function oneOf(name: string, input: unknown, values: readonly string[]): string {
-  const listed = values.map((value) => `"${value}"`).join(', ')
+function oneOf(name: string, input: unknown, values: readonly unknown[]): string {
+  const listed = values.map((value) => JSON.stringify(value)).join(', ')
   const asked = values.length === 1 ? `must be ${listed}` : `must be one of ${listed}`
   if (input === undefined) return `${name} is missing; it ${asked}`
-  const nearest = typeof input === 'string' && values.length > 1 ? nearestName(input, values) : undefined
+  const nearest = typeof input === 'string' && values.length > 1 ? nearestName(input, values.map(String)) : undefined
   const hint = nearest === undefined ? '' : `; the nearest is "${nearest}"`
   return `${name} ${asked}, got ${describe(input)}${hint}`
 }

@@ -1,17 +1,16 @@
 import { z } from 'zod'
-import { unitsOf } from '../../units/unitTable'
 import { clockTime, cohort, level, plan } from './cohortSchema'
 import { regimen } from './doseSchema'
 import { type ModelFile, modelSchema } from './modelSchema'
 import { type OwnCovariates, patientSchema } from './patientSchema'
-import { quantity } from './quantitySchema'
+import { quantity, unitCode } from './quantitySchema'
 import { target } from './targetSchema'
-import { prose } from './textSchema'
+import { title } from './textSchema'
 
 const display = z.strictObject({
-  time: z.enum(codes('time')).optional(),
-  concentration: z.enum(codes('concentration')).optional(),
-  amount: z.enum(codes('amount')).optional(),
+  time: unitCode('time').optional(),
+  concentration: unitCode('concentration').optional(),
+  amount: unitCode('amount').optional(),
   unbound: z.boolean().optional()
 })
 
@@ -30,7 +29,7 @@ function studyWith<M extends z.ZodType>(own: OwnCovariates, model: M) {
     $schema: z.string().optional(),
     format: z.literal('phasewise-study'),
     version: z.literal(1),
-    title: prose.optional(),
+    title: title.optional(),
     model,
     patient: patientSchema(own),
     regimens: z.array(regimen).min(1),
@@ -49,12 +48,6 @@ function studyWith<M extends z.ZodType>(own: OwnCovariates, model: M) {
     plan: plan.optional(),
     levels: z.array(level).optional()
   })
-}
-
-function codes(kind: 'time' | 'concentration' | 'amount'): [string, ...string[]] {
-  const [first, ...others] = unitsOf(kind).map(({ code }) => code)
-  if (first === undefined) throw new RangeError(`the kind ${kind} has no unit`)
-  return [first, ...others]
 }
 
 /** A study file as it is written; nothing in it is converted. */
