@@ -1,6 +1,10 @@
 import type { Hours, MilligramHoursPerLitre, MilligramsPerLitre } from '../units/canonical'
+import type { Course } from './course'
+import { areaBetween, extremes, valueAt } from './curve'
 import type { Administration } from './dose'
 import type { Reasons } from './reasons'
+import { isBefore, sameTime } from './times'
+import type { Signal, Trajectory } from './trajectory'
 
 /** From just after the start of a dose to the start of the next dose actually given. Doses that start together are one. */
 export interface IntervalExposure {
@@ -20,4 +24,109 @@ export interface IntervalExposure {
   /** Just before the next dose. */
   readonly trough: MilligramsPerLitre | undefined
   readonly why: Reasons
+}
+
+export interface IntervalsRequest {
+  readonly trajectory: Trajectory
+  readonly signal: Signal
+  readonly administrations: readonly Administration[]
+  /** When infusions run, without lag: an interval that they cover has no trough. */
+  readonly infusions: readonly Span[]
+  /** Where the last interval ends. */
+  readonly end: Hours
+  /** Whether the next dose follows at `end`, as in a period that recurs; otherwise the last interval is incomplete. */
+  readonly recurs: boolean
+}
+
+/** A stretch of time. */
+export interface Span {
+  readonly from: Hours
+  readonly to: Hours
+}
+
+/** Why an interval through which an infusion runs has no trough, fluctuation or swing. */
+export const INFUSION_THROUGHOUT = 'an infusion runs through the whole interval'
+
+/** The intervals of a regimen as it was given, up to its end. */
+export function intervalsOfCourse(course: Course, signal: Signal): IntervalExposure[] {
+  const { trajectory, administrations, carried, end } = course
+  const running = carried.flatMap((dose) =>
+    dose.kind === 'infusion' ? [{ from: dose.start, to: dose.start + dose.duration }] : []
+  )
+  const infusions = [...running, ...infusionsOf(administrations)]
+  return intervalsOf({ trajectory, signal, administrations, infusions, end, recurs: false })
+}
+
+/**
+ * Every interval between doses, ascending; none where nothing is given. Peak, minimum and their times by root search, the
+ * value just after a bolus included.
+ */
+export function intervalsOf(request: IntervalsRequest): IntervalExposure[] {
+  const { end, recurs } = request
+  const starts = startsOf(request.administrations).filter(({ at }) => isBefore(at, end))
+  return starts.map(({ at, together }, i): IntervalExposure => {
+    const next = starts.at(i + 1)?.at
+    return intervalExposure(request, together, at, next ?? end, next === undefined && !recurs)
+  })
+}
+
+/** When the infusions among these run. */
+export function infusionsOf(administrations: readonly Administration[]): Span[] {
+  return administrations.flatMap(({ at, duration, missed }) =>
+    duration > 0 && !missed ? [{ from: at, to: at + duration }] : []
+  )
+}
+
+/** Whether spans together cover all of [from, to]. */
+export function covers(spans: readonly Span[], from: Hours, to: Hours): boolean {
+  let reached = from
+  for (const span of [...spans].sort((a, b) => a.from - b.from)) {
+    if (isBefore(reached, span.from)) break
+    if (isBefore(reached, span.to)) reached = span.to
+  }
+  return !isBefore(reached, to)
+}
+
+interface Start {
+  readonly at: Hours
+  readonly together: readonly Administration[]
+}
+
+/** Dose starts with all that is given at each. A dose that was missed, or of which nothing was given, starts nothing. */
+export function startsOf(administrations: readonly Administration[]): Start[] {
+  const starts: { at: Hours; together: Administration[] }[] = []
+  const given = administrations.filter(({ missed, amount }) => !missed && amount > 0).sort((a, b) => a.at - b.at)
+  for (const administration of given) {
+    const last = starts.at(-1)
+    if (last !== undefined && sameTime(last.at, administration.at)) last.together.push(administration)
+    else starts.push({ at: administration.at, together: [administration] })
+  }
+  return starts
+}
+
+function intervalExposure(
+  request: IntervalsRequest,
+  administrations: readonly Administration[],
+  start: Hours,
+  end: Hours,
+  incomplete: boolean
+): IntervalExposure {
+  const { trajectory, signal, infusions } = request
+  const auc = areaBetween(trajectory, signal, start, end)
+  const why = incomplete
+    ? 'the last interval runs to the end of the study; no dose follows it'
+    : covers(infusions, start, end)
+      ? INFUSION_THROUGHOUT
+      : undefined
+  return {
+    start,
+    end,
+    incomplete,
+    administrations,
+    auc,
+    ...extremes(trajectory, signal, start, end),
+    average: auc / (end - start),
+    trough: why === undefined ? valueAt(trajectory, signal, end, 'before') : undefined,
+    why: why === undefined ? {} : { trough: why }
+  }
 }
