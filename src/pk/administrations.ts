@@ -142,7 +142,9 @@ function writeLine(request: LineRequest, out: MutableWrittenOut): void {
   if (notGiven > 0) {
     const which = Number.isFinite(last) ? `${notGiven} of ${last}` : String(notGiven)
     const [doses, are] = notGiven === 1 ? ['dose', 'is'] : ['doses', 'are']
-    out.notes.push(`${nameOf(request)}: ${which} ${doses} would come at or after ${plain(until)} h and ${are} not given`)
+    out.notes.push(
+      `${nameOf(request)}: ${which} ${doses} would come at or after ${plain(until)} h and ${are} not given`
+    )
   }
 }
 
