@@ -1,0 +1,14 @@
+import type { Confirmation } from '../study/confirmation'
+
+/** What agreement of two methods does not prove; it stands wherever the agreement does. */
+export const NOT_PROVED =
+  'This says nothing about how well the model fits this patient; its typical prediction error is not stated by the source.'
+
+/** `the arithmetic is confirmed by a second method (3 in 10^10)`: the largest relative difference, rounded up. */
+export function agreementInWords(confirmation: Confirmation): string {
+  const difference = confirmation.largestRelativeDifference
+  if (difference === 0) return 'the arithmetic is confirmed by a second method, to the last digit'
+  const exponent = Math.ceil(-Math.log10(difference) - 1e-12)
+  const parts = Math.ceil(difference * 10 ** exponent)
+  return `the arithmetic is confirmed by a second method (${parts} in 10^${exponent})`
+}

@@ -1,0 +1,116 @@
+import { findingsOverTime } from '../patient/overTime'
+import { type CourseRequest, courseOf } from '../pk/course'
+import { distributionOver } from '../pk/distribution'
+import { dosesOverLimits } from '../pk/doseLimits'
+import { exposureOf } from '../pk/exposure'
+import type { Issue } from '../pk/issue'
+import { isLinear } from '../pk/model'
+import { OperatorStore } from '../pk/operatorStore'
+import { type PhasesOfStretch, phasesOf } from '../pk/phases'
+import { tooManyRows } from '../pk/profileTimes'
+import { regimenCautions, studyCautions } from './cautions'
+import { failedChecks } from './checkedModel'
+import { individualsOf } from './individuals'
+import type { IndividualStretch, RegimenResult, StudyResult } from './result'
+import type { Study } from './study'
+
+export type StudyOutcome =
+  | { readonly ok: true; readonly result: StudyResult }
+  | { readonly ok: false; readonly issues: readonly Issue[] }
+
+/**
+ * Run a study: the individual over every stretch of time, then every regimen in it. Issues where a covariate is missing, a
+ * parameter cannot be, a prescription cannot be written out, the table would be too long or the model fails its own checks.
+ */
+export function runStudy(study: Study): StudyOutcome {
+  const individuals = individualsOf(study)
+  const tooLong = tooManyRows(study.sampling, study.sampling.until)
+  const early = [
+    ...failedChecks(study.drugModel, study.modelChecks),
+    ...(tooLong === undefined ? [] : [tooLong]),
+    ...(individuals.ok ? [] : individuals.issues)
+  ]
+  if (!individuals.ok || early.length > 0) return { ok: false, issues: early }
+
+  const { stretches } = individuals
+  const store = new OperatorStore()
+  const issues: Issue[] = []
+  const regimens: RegimenResult[] = []
+  const cautions: string[] = []
+  study.regimens.forEach((regimen, index) => {
+    const request: CourseRequest = {
+      prescription: regimen,
+      stretches: stretches.map(({ from, individual }) => ({ from, subject: individual.subject })),
+      sessions: study.sessions,
+      until: study.sampling.until,
+      path: `regimens[${index}]`,
+      store
+    }
+    const outcome = courseOf(request)
+    if (!outcome.ok) {
+      issues.push(...outcome.issues)
+      return
+    }
+    const { course } = outcome
+    const overLimits = dosesOverLimits(course, study.drugModel.drug.limits)
+    regimens.push({
+      name: regimen.name,
+      course,
+      exposure: exposureOf({
+        course,
+        request,
+        targets: study.targets,
+        ...(study.now === undefined ? {} : { now: study.now })
+      }),
+      distribution: distributionOver(course, study.drugModel.drug.sampleAfter),
+      overLimits,
+      notes: course.notes
+    })
+    cautions.push(...regimenCautions(regimen, course, overLimits))
+  })
+  if (issues.length > 0) return { ok: false, issues }
+
+  const findings = [
+    ...stretches.flatMap(({ individual }) => individual.findings),
+    ...findingsOverTime(study.drugModel, study.people, study.sampling.until)
+  ]
+  return {
+    ok: true,
+    result: {
+      study,
+      stretches,
+      regimens,
+      phases: stretchPhases(study, stretches, regimens),
+      findings,
+      cautions: studyCautions(study, findings, cautions)
+    }
+  }
+}
+
+/** The phases of every stretch of a linear model, with the periods and infusion lengths of all regimens. */
+function stretchPhases(
+  study: Study,
+  stretches: readonly IndividualStretch[],
+  regimens: readonly RegimenResult[]
+): readonly PhasesOfStretch[] {
+  const { until } = study.sampling
+  const given = regimens.flatMap(({ course }) => course.administrations)
+  const periods = regimens.flatMap(({ exposure }) => exposure.steadyState.period ?? [])
+  const infusions = given.map(({ duration }) => duration).filter((duration) => duration > 0)
+  return stretches.flatMap(({ from, individual }, i) => {
+    const { model } = individual.subject
+    if (!isLinear(model) || from >= until) return []
+    return phasesOf({
+      model,
+      from,
+      to: Math.min(stretches[i + 1]?.from ?? until, until),
+      until,
+      periods: distinct(periods),
+      infusions: distinct(infusions)
+    })
+  })
+}
+
+function distinct(values: readonly number[]): readonly number[] {
+  return [...new Set(values)].sort((a, b) => a - b)
+}
