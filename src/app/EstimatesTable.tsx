@@ -4,15 +4,14 @@ import type { EstimatesView } from '../report/page/page'
 /** Weight descriptors and renal estimates side by side, the one that the model uses marked in words. */
 export function EstimatesTable(props: { estimates: EstimatesView }) {
   return (
-    <details class="estimates" open>
-      <summary>Size and renal estimates</summary>
-      <For each={props.estimates.groups}>
-        {(group) => (
-          <table>
+    <For each={props.estimates.groups}>
+      {(group) => (
+        <>
+          <table class="estimates">
             <thead>
               <tr>
                 <th scope="col">{group.title}</th>
-                <For each={props.estimates.columns} fallback={<th scope="col">value</th>}>
+                <For each={props.estimates.columns} fallback={<th scope="col">at 0 h</th>}>
                   {(column) => <th scope="col">{column}</th>}
                 </For>
               </tr>
@@ -20,15 +19,12 @@ export function EstimatesTable(props: { estimates: EstimatesView }) {
             <tbody>
               <For each={group.rows}>
                 {(row) => (
-                  <tr classList={{ used: row.used }}>
+                  <tr classList={{ used: row.usedBy !== '' }}>
                     <th scope="row">
                       {row.label}
-                      <Show when={row.used}>
+                      <Show when={row.usedBy !== ''}>
                         {' '}
-                        <span class="chip">used by the model</span>
-                      </Show>
-                      <Show when={row.note}>
-                        <span class="quiet"> {row.note}</span>
+                        <span class="chip">used for {row.usedBy}</span>
                       </Show>
                     </th>
                     <For each={row.values}>
@@ -39,8 +35,11 @@ export function EstimatesTable(props: { estimates: EstimatesView }) {
               </For>
             </tbody>
           </table>
-        )}
-      </For>
-    </details>
+          <Show when={group.missing !== ''}>
+            <p class="quiet">{group.missing}</p>
+          </Show>
+        </>
+      )}
+    </For>
   )
 }

@@ -33,7 +33,6 @@ export function Note(props: { page: PageView }) {
             </p>
           )}
         </For>
-        <EstimatesTable estimates={note().estimates} />
         <ul class="population">
           <For each={note().population}>
             {(line) => (
@@ -61,7 +60,6 @@ export function Note(props: { page: PageView }) {
         <p class="quiet">
           <Words prose={note().model.source} />
         </p>
-        <For each={note().model.cautions}>{(caution) => <p class="quiet warn">{caution}</p>}</For>
       </section>
       <section aria-labelledby="regimens">
         <h2 id="regimens">Regimens</h2>
@@ -88,8 +86,12 @@ export function Note(props: { page: PageView }) {
           </For>
         </ul>
       </section>
+      <section aria-labelledby="estimates">
+        <h2 id="estimates">Size and renal estimates</h2>
+        <EstimatesTable estimates={note().estimates} />
+      </section>
     </article>
   )
 }
 
-const STANDING = { inside: 'inside', outside: 'outside', unknown: 'not known', question: 'check' } as const
+const STANDING = { inside: 'inside', outside: 'outside', unknown: 'not known', note: 'note' } as const

@@ -1,6 +1,6 @@
 import { createMemo, For, Show } from 'solid-js'
 import { phasesFigure } from '../report/figurePhases'
-import type { PhasesBlock, PhasesView } from '../report/page/page'
+import type { PhaseCurves, PhasesBlock, PhasesView } from '../report/page/page'
 import { DownloadButton } from './DownloadButton'
 import { FigureView } from './FigureView'
 import { Grid } from './Grid'
@@ -24,22 +24,30 @@ export function PhasesCard(props: { desk: StudyDesk; phases: PhasesView }) {
 }
 
 function Block(props: { block: PhasesBlock }) {
-  let frame!: HTMLDivElement
-  const width = createWidth(() => frame, 520)
-  const figure = createMemo(() => phasesFigure(props.block.figure, width()))
   return (
     <div class="phase-block">
-      <div ref={frame}>
-        <FigureView figure={figure()} />
+      <Show when={props.block.figure}>{(curves) => <PhaseFigure curves={curves()} />}</Show>
+      <div>
+        <Grid grid={props.block.table} />
+        <For each={props.block.sentences}>
+          {(sentence) => (
+            <p class="quiet">
+              <Words prose={sentence} />
+            </p>
+          )}
+        </For>
       </div>
-      <Grid grid={props.block.table} />
-      <For each={props.block.sentences}>
-        {(sentence) => (
-          <p class="quiet">
-            <Words prose={sentence} />
-          </p>
-        )}
-      </For>
+    </div>
+  )
+}
+
+function PhaseFigure(props: { curves: PhaseCurves }) {
+  let frame!: HTMLDivElement
+  const width = createWidth(() => frame, 520)
+  const figure = createMemo(() => phasesFigure(props.curves, width()))
+  return (
+    <div ref={frame}>
+      <FigureView figure={figure()} />
     </div>
   )
 }

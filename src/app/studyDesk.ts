@@ -31,7 +31,7 @@ export function createStudyDesk(worker: PageWorker) {
   async function open(next: StudyFile): Promise<void> {
     const turn = ++latest
     setBusy(true)
-    const outcome = await worker.open(next.content).catch((failure: unknown) => ({
+    const outcome = await worker.open(next.content, next.name).catch((failure: unknown) => ({
       ok: false as const,
       issues: [
         { path: '', message: `the program failed on this file, which is a fault of ours: ${messageOf(failure)}` }

@@ -13,7 +13,7 @@ export function phasesFigure(curves: PhaseCurves, width: number): Figure {
   const until = curves.times[curves.times.length - 1] ?? 1
   const y = logarithmicAxis(DEPTH, 1, bottom, plot.y)
   const x = (time: number) => plot.x + (plot.width * time) / until
-  const marks = timeMarks({ until, unit: curves.timeUnit, hoursPerUnit: 1, width: plot.width })
+  const marks = timeMarks({ until, unit: curves.timeUnit, hoursPerUnit: curves.hoursPerUnit, width: plot.width })
   const path = (values: readonly number[]) => {
     let d = ''
     curves.times.forEach((time, k) => {

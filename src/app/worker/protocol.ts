@@ -26,8 +26,8 @@ export interface NamedFile {
  * as the page shows it.
  */
 export interface PageWorker {
-  /** Validate a study file, compute it and lay the page out. */
-  open(file: Blob): Promise<Outcome>
+  /** Validate a study file, compute it and lay the page out; downloads are named after the file. */
+  open(file: Blob, name: string): Promise<Outcome>
   /** Rows of the concentration table as the screen shows them. */
   rows(asked: RowsAsked): Promise<readonly (readonly string[])[]>
   /** A table in full precision, as the command line writes it, and its metadata. */

@@ -45,6 +45,8 @@ export interface EstimatesView {
   readonly groups: readonly {
     readonly title: string
     readonly rows: readonly EstimateRow[]
+    /** What could not be computed, and why; empty where all was. */
+    readonly missing: string
   }[]
 }
 
@@ -52,14 +54,13 @@ export interface EstimateRow {
   readonly label: string
   /** One a stretch; text with unit, or why it was not computed. */
   readonly values: readonly { readonly text: string; readonly computed: boolean }[]
-  /** Whether the model uses it. */
-  readonly used: boolean
-  readonly note?: string
+  /** What in the model takes this very value; empty where it is not used. */
+  readonly usedBy: string
 }
 
 /** One covariate against the people that the model was built on. */
 export interface PopulationLine {
-  readonly standing: 'inside' | 'outside' | 'unknown' | 'question'
+  readonly standing: 'inside' | 'outside' | 'unknown' | 'note'
   readonly text: string
 }
 
@@ -69,7 +70,6 @@ export interface ModelView {
   /** The relations as equations, with their value for this patient. */
   readonly equations: readonly Prose[]
   readonly source: Prose
-  readonly cautions: readonly string[]
 }
 
 export interface RegimenNote {
@@ -123,13 +123,15 @@ export interface PhasesBlock {
   readonly title: string
   readonly table: GridView
   readonly sentences: readonly Prose[]
-  readonly figure: PhaseCurves
+  /** Absent where the disposition has no such sum. */
+  readonly figure?: PhaseCurves
 }
 
 /** The response to a bolus into the observed compartment and its parts, in a share of the value at 0. */
 export interface PhaseCurves {
   readonly times: readonly number[]
   readonly timeUnit: string
+  readonly hoursPerUnit: number
   readonly total: readonly number[]
   readonly parts: readonly { readonly label: string; readonly values: readonly number[]; readonly ruling: boolean }[]
   readonly label: string
@@ -139,5 +141,4 @@ export interface PhaseCurves {
 export interface TableView {
   readonly columns: readonly { readonly title: string; readonly unit: string; readonly numeric: boolean }[]
   readonly regimens: readonly { readonly label: RegimenLabel; readonly rows: number }[]
-  readonly fileName: string
 }

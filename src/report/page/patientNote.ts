@@ -1,0 +1,105 @@
+import { nameInWords, valueInWords } from '../../patient/covariateWords'
+import type { DrugModel } from '../../patient/drugModel'
+import type { CovariateName, Person } from '../../patient/person'
+import type { Study } from '../../study/study'
+import { type Prose, value } from './prose'
+import { listed, polished, type Showing } from './showing'
+
+/** Typed values are echoed with every digit, in the unit in which they are read. */
+const DIGITS = 6
+/** Said first, in this order, without their names. */
+const SPOKEN: readonly CovariateName[] = ['weight', 'height']
+const AGES: readonly CovariateName[] = ['age', 'postnatalAge', 'gestationalAge', 'postmenstrualAge']
+
+/** The patient in a sentence, then a sentence for each change. */
+export function patientNote(study: Study, showing: Showing): readonly Prose[] {
+  const [first, ...later] = study.people
+  if (first === undefined) throw new RangeError('a study has a person from time 0 on')
+  let before = first.person
+  const sentences: Prose[] = [describe(first.person, study.drugModel)]
+  for (const { from, person } of later) {
+    sentences.push(change(before, person, from, study, showing))
+    before = person
+  }
+  if (study.sessions.length > 0) {
+    const sessions = study.sessions.map((session) => {
+      const repeated = session.every === undefined ? '' : ', repeated'
+      return `${showing.typedTime(session.duration)} from ${showing.typedTime(session.at)}${repeated}`
+    })
+    sentences.push(['Dialysis: ', value(listed(sessions)), '.'])
+  }
+  return sentences
+}
+
+/** `from 72 h (day 4)`. */
+export function since(hours: number, showing: Showing): string {
+  return `${showing.typedTime(hours)} (day\u00a0${Math.floor(hours / 24) + 1})`
+}
+
+function describe(person: Person, drugModel: DrugModel): Prose {
+  const shown = (name: CovariateName) => shownValue(name, person, drugModel)
+  const age = shown('age')
+  const spoken = [age, ...SPOKEN.map(shown)].filter((text) => text !== undefined)
+  const rest = Object.keys(person.numbers).filter((name) => name !== 'age' && !SPOKEN.includes(name))
+  const ages = rest.filter((name) => AGES.includes(name))
+  const others = rest.filter((name) => !AGES.includes(name))
+  const prose: (string | ReturnType<typeof value>)[] = [`A ${who(person)}`]
+  spoken.forEach((text, k) => {
+    prose.push(k === 0 ? ' of ' : k === spoken.length - 1 ? ' and ' : ', ', value(text))
+  })
+  for (const name of [...ages, ...others]) prose.push(`, ${nameInWords(name)} `, value(shown(name) ?? ''))
+  for (const [name, category] of Object.entries(person.categories)) prose.push(`, ${name} `, value(category))
+  if (person.dosingWeight !== undefined) {
+    prose.push(', dosing weight ', value(polished(valueInWords('weight', person.dosingWeight, drugModel, DIGITS))))
+  }
+  if (person.renalReplacement !== 'none') prose.push(`, on ${person.renalReplacement} renal replacement`)
+  prose.push('.')
+  return prose
+}
+
+function change(before: Person, after: Person, from: number, study: Study, showing: Showing): Prose {
+  const { drugModel } = study
+  const names = new Set([...Object.keys(before.numbers), ...Object.keys(after.numbers)])
+  const changes: string[] = []
+  for (const name of names) {
+    if (before.numbers[name] === after.numbers[name]) continue
+    const now = shownValue(name, after, drugModel)
+    changes.push(now === undefined ? `${nameInWords(name)} no longer known` : `${nameInWords(name)} ${now}`)
+  }
+  for (const [name, category] of Object.entries(after.categories)) {
+    if (before.categories[name] !== category) changes.push(`${name} ${category}`)
+  }
+  if (before.dosingWeight !== after.dosingWeight && after.dosingWeight !== undefined) {
+    changes.push(`dosing weight ${polished(valueInWords('weight', after.dosingWeight, drugModel, DIGITS))}`)
+  }
+  if (before.renalReplacement !== after.renalReplacement) changes.push(`renal replacement: ${after.renalReplacement}`)
+  return [
+    'From ',
+    value(since(from, showing)),
+    ' on: ',
+    value(listed(changes.length === 0 ? ['as before'] : changes)),
+    '.'
+  ]
+}
+
+/** What changes at a time, short enough to stand over a figure. */
+export function changeLabel(before: Person, after: Person, drugModel: DrugModel): string {
+  const changed = Object.keys(after.numbers).filter((name) => before.numbers[name] !== after.numbers[name])
+  const [name] = changed
+  if (name === undefined) return 'patient changes'
+  const more = changed.length > 1 ? ` and ${changed.length - 1} more` : ''
+  return `${nameInWords(name).replace(/^serum /, '')} ${shownValue(name, after, drugModel) ?? ''}${more}`
+}
+
+function shownValue(name: CovariateName, person: Person, drugModel: DrugModel): string | undefined {
+  const number = person.numbers[name]
+  return number === undefined ? undefined : polished(valueInWords(name, number, drugModel, DIGITS))
+}
+
+function who(person: Person): string {
+  const years = person.numbers.age
+  const child = years !== undefined && years < 18
+  if (person.sex === undefined) return child ? 'child' : 'person'
+  if (person.sex === 'female') return child ? 'girl' : 'woman'
+  return child ? 'boy' : 'man'
+}
