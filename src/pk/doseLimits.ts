@@ -124,10 +124,14 @@ function largestDays(doses: readonly Given[]): Candidate[] {
   const largest = new Map<Given, number>()
   const ends = doses.map(({ administration: { at, duration } }) => at + duration)
   const begins = doses.flatMap(({ administration: { at, duration } }) => (duration > 0 ? [at + DAY] : []))
-  for (const end of [...ends, ...begins]) {
+  let first = 0
+  for (const end of [...ends, ...begins].sort((a, b) => a - b)) {
     let sum = 0
     let last: Given | undefined
-    for (const given of doses) {
+    // Doses that were over before this window were over before every later one.
+    while (first < doses.length && isOver(doses[first], end - DAY)) first += 1
+    for (let k = first; k < doses.length && doses[k].administration.at <= end; k++) {
+      const given = doses[k]
       const amount = deliveredIn(given, end - DAY, end)
       sum += amount
       if (amount > 0) last = given
@@ -135,6 +139,10 @@ function largestDays(doses: readonly Given[]): Candidate[] {
     if (last !== undefined) largest.set(last, Math.max(sum, largest.get(last) ?? 0))
   }
   return [...largest].map(([given, value]) => ({ given, value })).sort(byTime)
+}
+
+function isOver({ administration: { at, duration } }: Given, time: Hours): boolean {
+  return at + duration < time
 }
 
 function byTime(a: Candidate, b: Candidate): number {

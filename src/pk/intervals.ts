@@ -63,10 +63,12 @@ export function intervalsOfCourse(course: Course, signal: Signal): IntervalExpos
  */
 export function intervalsOf(request: IntervalsRequest): IntervalExposure[] {
   const { end, recurs } = request
+  const running = joined(request.infusions)
   const starts = startsOf(request.administrations).filter(({ at }) => isBefore(at, end))
   return starts.map(({ at, together }, i): IntervalExposure => {
     const next = starts.at(i + 1)?.at
-    return intervalExposure(request, together, at, next ?? end, next === undefined && !recurs)
+    const incomplete = next === undefined && !recurs
+    return intervalExposure(request, running, together, { from: at, to: next ?? end }, incomplete)
   })
 }
 
@@ -77,14 +79,28 @@ export function infusionsOf(administrations: readonly Administration[]): Span[] 
   )
 }
 
-/** Whether spans together cover all of [from, to]. */
-export function covers(spans: readonly Span[], from: Hours, to: Hours): boolean {
-  let reached = from
-  for (const span of [...spans].sort((a, b) => a.from - b.from)) {
-    if (isBefore(reached, span.from)) break
-    if (isBefore(reached, span.to)) reached = span.to
+/** Spans that touch or overlap as one, ascending. */
+export function joined(spans: readonly Span[]): Span[] {
+  const runs: { from: Hours; to: Hours }[] = []
+  for (const { from, to } of [...spans].sort((a, b) => a.from - b.from)) {
+    const last = runs.at(-1)
+    if (last === undefined || isBefore(last.to, from)) runs.push({ from, to })
+    else last.to = Math.max(last.to, to)
   }
-  return !isBefore(reached, to)
+  return runs
+}
+
+/** Whether one of these `joined` spans covers all of [from, to]. */
+export function covers(runs: readonly Span[], from: Hours, to: Hours): boolean {
+  let low = 0
+  let high = runs.length
+  while (low < high) {
+    const middle = (low + high) >> 1
+    if (isBefore(from, runs[middle].from)) high = middle
+    else low = middle + 1
+  }
+  const run = runs.at(low - 1)
+  return low > 0 && run !== undefined && !isBefore(run.to, to)
 }
 
 interface Start {
@@ -105,17 +121,16 @@ export function startsOf(administrations: readonly Administration[]): Start[] {
 }
 
 function intervalExposure(
-  request: IntervalsRequest,
+  { trajectory, signal }: IntervalsRequest,
+  running: readonly Span[],
   administrations: readonly Administration[],
-  start: Hours,
-  end: Hours,
+  { from: start, to: end }: Span,
   incomplete: boolean
 ): IntervalExposure {
-  const { trajectory, signal, infusions } = request
   const auc = areaBetween(trajectory, signal, start, end)
   const why = incomplete
     ? 'the last interval runs to the end of the study; no dose follows it'
-    : covers(infusions, start, end)
+    : covers(running, start, end)
       ? INFUSION_THROUGHOUT
       : undefined
   return {

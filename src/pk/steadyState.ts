@@ -3,7 +3,15 @@ import { accumulationOf } from './accumulation'
 import type { Course, CourseRequest } from './course'
 import { areaBetween, extremes, valueAt } from './curve'
 import { NO_WINDOW } from './days'
-import { covers, INFUSION_THROUGHOUT, type IntervalExposure, infusionsOf, intervalsOf, type Span } from './intervals'
+import {
+  covers,
+  INFUSION_THROUGHOUT,
+  type IntervalExposure,
+  infusionsOf,
+  intervalsOf,
+  joined,
+  type Span
+} from './intervals'
 import { levelReached } from './levelReached'
 import type { OperatorStore } from './operatorStore'
 import { type Reached, reached } from './reached'
@@ -67,7 +75,7 @@ function periodicValues(
   const auc = areaBetween(steady.course, OBSERVED, 0, period)
   const { peak, peakTime, minimum } = extremes(steady.course, OBSERVED, 0, period)
   const average = auc / period
-  const throughout = covers(recurringInfusions(steady), 0, period)
+  const throughout = covers(joined(recurringInfusions(steady)), 0, period)
   const troughs = intervals.flatMap(({ trough }) => (trough === undefined ? [] : [trough]))
   const trough = troughs.length > 0 ? Math.min(...troughs) : undefined
   const accumulation = accumulationOf(steady, request.store)

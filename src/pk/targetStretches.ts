@@ -44,10 +44,20 @@ export function judgedOn(judging: Judging, when: When, signal: Signal): Judged |
   const all = intervalsOfCourse(course, signal)
   const stretches = stretchesOf(judging, when, all)
   if (typeof stretches === 'string') return stretches
-  const doses = all.filter(({ start }) =>
-    stretches.some(({ from, to }) => !isBefore(start, from) && isBefore(start, to))
-  )
+  const doses = all.filter(({ start }) => startsIn(stretches, start))
   return { trajectory: course.trajectory, stretches, intervals: doses.filter(({ incomplete }) => !incomplete), doses }
+}
+
+/** Whether a time lies in one of these ascending stretches, which do not overlap; the end of one is not in it. */
+function startsIn(stretches: readonly Stretched[], time: Hours): boolean {
+  let low = 0
+  let high = stretches.length
+  while (low < high) {
+    const middle = (low + high) >> 1
+    if (isBefore(time, stretches[middle].from)) high = middle
+    else low = middle + 1
+  }
+  return low > 0 && isBefore(time, stretches[low - 1].to)
 }
 
 function stretchesOf(
