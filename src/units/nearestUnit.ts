@@ -101,9 +101,9 @@ export function nearestUnit(kind: Kind, typed: string): string | undefined {
   if (molar !== undefined && unitOf(kind, molar) !== undefined) return molar
   const text = typed
     .toLowerCase()
+    .replaceAll(/\bper\b/g, '/')
     .replaceAll(/[\s{}]/g, '')
     .replaceAll(/[*·⋅×]/g, '.')
-    .replaceAll('per', '/')
     .replace(/[_]+$/, '')
   const indexed = INDEXED.test(text)
   const codes = new Set(spelled(text.replace(INDEXED, '')))
