@@ -8,7 +8,8 @@ import type { Prescription, SessionLine } from './prescription'
 import { propagate } from './propagate'
 import { continuedLine, continuedSession, isEndless, prolonged, repeatsAtEnd } from './repeating'
 import type { Segment } from './segment'
-import { type Session, sessionsBefore } from './sessions'
+import { dosesDuringSessions } from './sessionOverlap'
+import { type Session, sessionsBefore, tooManySessions } from './sessions'
 import { type Beginning, emptyBeginning, steadyBeginning } from './startInSteadyState'
 import type { BodyState } from './state'
 import type { Stretch } from './subject'
@@ -81,14 +82,16 @@ function run(request: CourseRequest, end: Hours): CourseOutcome {
     path
   })
   const beginning = beginningOf(request, store)
-  const issues = withoutRepeats([...written.issues, ...beginning.issues])
+  const sessionEnd = (line: SessionLine): Hours => (repeatsAtEnd(line, until) ? end : until)
+  const sessionIssues = tooManySessions(request.sessions, end, 'patient.sessions')
+  const issues = withoutRepeats([...written.issues, ...beginning.issues, ...sessionIssues])
   if (issues.length > 0) return { ok: false, issues }
   const given = written.administrations.map((administration) =>
     isBefore(until, end) && isEndless(administration, prescription.lines, until)
       ? { ...administration, doses: prolonged(administration.doses, end) }
       : administration
   )
-  const sessions = request.sessions.flatMap((line) => sessionsBefore([line], repeatsAtEnd(line, until) ? end : until))
+  const sessions = request.sessions.flatMap((line) => sessionsBefore([line], sessionEnd(line)))
   const segments = timeline({
     doses: [...beginning.carried, ...given.flatMap((administration) => administration.doses)],
     models: stretches.map(({ from, subject }) => ({ from, model: subject.model })),
@@ -104,7 +107,7 @@ function run(request: CourseRequest, end: Hours): CourseOutcome {
     initial: beginning.state,
     trajectory: propagate(segments, beginning.state, store),
     end,
-    notes: [...beginning.notes, ...written.notes]
+    notes: [...beginning.notes, ...written.notes, ...dosesDuringSessions(prescription.lines, given, sessions)]
   }
   return { ok: true, course }
 }

@@ -120,7 +120,9 @@ export class LinearPiece implements Piece {
     if (signal.kind !== 'effect-site') return integral(areaFunctional(signal))
     const before = start.effectSites[signal.index]
     const after = functionalAfter(operator, levelFunctional(model, signal.index), start.amounts, before, this.#rates)
-    return integral(sourceAreaFunctional(model, signal.index)) - (after - before) / model.effectSites[signal.index].rate
+    const rise = (after - before) / model.effectSites[signal.index].rate
+    // Where next to nothing has gone through, rounding may leave less than nothing.
+    return Math.max(0, integral(sourceAreaFunctional(model, signal.index)) - rise)
   }
 
   /** Time derivative of one amount. */

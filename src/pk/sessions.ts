@@ -1,5 +1,6 @@
 import type { Hours, LitresPerHour } from '../units/canonical'
 import { multipleOf } from '../units/spacing'
+import type { Issue } from './issue'
 import { type Model, observedVolume } from './model'
 import type { SessionLine } from './prescription'
 import { isBefore } from './times'
@@ -9,6 +10,19 @@ export interface Session {
   readonly start: Hours
   readonly duration: Hours
   readonly clearance: LitresPerHour
+}
+
+/** More sessions than this are refused before they are written out. */
+export const MOST_SESSIONS = 100_000
+
+/** Session lines that repeat too often to be written out, by their place under `path`. */
+export function tooManySessions(lines: readonly SessionLine[], until: Hours, path: string): Issue[] {
+  return lines.flatMap((line, i) => {
+    const sessions = sessionCount(line, until)
+    if (sessions <= MOST_SESSIONS) return []
+    const message = `${sessions} sessions are scheduled; at most ${MOST_SESSIONS} can be written out`
+    return [{ path: `${path}[${i}].every`, message }]
+  })
 }
 
 /** Every session that starts before `until`; a line with `every` and no `count` repeats until then. */
@@ -26,6 +40,14 @@ export function sessionsOfLine(line: SessionLine, until: Hours): Session[] {
     sessions.push({ start, duration: line.duration, clearance: line.clearance })
   }
   return sessions
+}
+
+/** Sessions of a line up to `until`, before any is written out. */
+function sessionCount(line: SessionLine, until: Hours): number {
+  if (line.every === undefined) return 1
+  const spacing = multipleOf(line.every, 1)
+  if (!(spacing > 0)) throw new RangeError(`sessions must be more than 0 h apart, got ${spacing} h`)
+  return Math.min(line.count ?? Number.POSITIVE_INFINITY, Math.max(0, Math.ceil((until - line.at) / spacing)))
 }
 
 /** The model with a clearance of total drug out of the observed compartment added to what it has. */

@@ -127,30 +127,40 @@ function summed(running: readonly Infusion[], size: number): ReadonlyVector {
   return rates
 }
 
-/** The model of the stretch with the clearances of the sessions in force; one object for each combination met. */
+/**
+ * The model of the stretch with the clearances of the sessions in force, asked for at ascending times; one object for each
+ * combination met, so that its operators are made once.
+ */
 class ModelsInForce {
   readonly #stretches: readonly ModelStretch[]
   readonly #sessions: readonly Session[]
   readonly #made = new Map<Model, Map<number, Model>>()
+  #begun = 0
+  #running: Session[] = []
 
   constructor(stretches: readonly ModelStretch[], sessions: readonly Session[]) {
     this.#stretches = stretches
-    this.#sessions = sessions
+    this.#sessions = [...sessions].sort((a, b) => a.start - b.start)
   }
 
   at(time: Hours): Model {
     let model = this.#stretches[0].model
     for (const stretch of this.#stretches) if (!isBefore(time, stretch.from)) model = stretch.model
-    let clearance = 0
-    for (const session of this.#sessions) {
-      if (!isBefore(time, session.start) && isBefore(time, session.start + session.duration)) {
-        clearance += session.clearance
-      }
-    }
+    const clearance = this.#clearanceAt(time)
     const made = this.#made.get(model) ?? new Map<number, Model>()
     this.#made.set(model, made)
     const withSessions = made.get(clearance) ?? withAddedClearance(model, clearance)
     made.set(clearance, withSessions)
     return withSessions
+  }
+
+  #clearanceAt(time: Hours): number {
+    const sessions = this.#sessions
+    while (this.#begun < sessions.length && !isBefore(time, sessions[this.#begun].start)) {
+      this.#running.push(sessions[this.#begun])
+      this.#begun += 1
+    }
+    this.#running = this.#running.filter((session) => isBefore(time, session.start + session.duration))
+    return this.#running.reduce((sum, session) => sum + session.clearance, 0)
   }
 }

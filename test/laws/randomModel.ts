@@ -119,7 +119,8 @@ export function randomStudy(random: Random): RandomStudy {
       ]
     : []
   const lines = Array.from({ length: random.whole(1, 3) }, () => randomLine(random, until))
-  return { prescription: { name: 'random', start: 'empty', lines }, stretches, sessions, until }
+  const start = random.chance(0.3) ? 'steady-state' : 'empty'
+  return { prescription: { name: 'random', start, lines }, stretches, sessions, until }
 }
 
 /** A dose line on one of the random routes. */

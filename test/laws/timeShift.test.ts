@@ -33,6 +33,7 @@ function shifted(study: RandomStudy, later: number): RandomStudy {
     })),
     prescription: {
       ...study.prescription,
+      start: 'empty',
       lines: study.prescription.lines.map((line) => ({
         ...line,
         at: onGrid(line.at) + later,

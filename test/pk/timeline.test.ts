@@ -1,9 +1,10 @@
 import { describe, expect, test } from 'vitest'
-import type { Dose } from '../../src/pk/dose'
-import { sessionsBefore } from '../../src/pk/sessions'
+import type { Administration, Dose } from '../../src/pk/dose'
+import { dosesDuringSessions } from '../../src/pk/sessionOverlap'
+import { type Session, sessionsBefore, tooManySessions } from '../../src/pk/sessions'
 import { type ModelStretch, timeline } from '../../src/pk/timeline'
 import { expectWithin } from '../expectWithin'
-import { hours, oneCompartment } from './subjects'
+import { hours, line, oneCompartment } from './subjects'
 
 const model = oneCompartment({ volume: 10, k: 0.1, ka: 1 })
 const other = oneCompartment({ volume: 20, k: 0.2, ka: 1 })
@@ -111,4 +112,39 @@ describe('sessions', () => {
     )
     expect(rates).toEqual([[], [0.5], [0.25], []])
   })
+})
+
+describe('doses during a session', () => {
+  const given = (at: number, duration: number, number: number): Administration => ({
+    line: 0,
+    number,
+    at,
+    duration,
+    route: 'in',
+    amount: 1,
+    productAmount: 1,
+    doses: [],
+    missed: false
+  })
+  const notes = (administrations: readonly Administration[], sessions: readonly Session[]): string[] =>
+    dosesDuringSessions([line(1)], administrations, sessions)
+  const session = { start: 10, duration: 4, clearance: 5 }
+
+  test('are named by line; those that end as it starts or start as it ends are none', () => {
+    expect(
+      notes([given(9, 1, 1), given(9.5, 1, 2), given(10, 0, 3), given(13.9, 0, 4), given(14, 2, 5)], [session])
+    ).toEqual(['dose line 1 (in): doses 2, 3, 4 overlap a dialysis session'])
+    expect(notes([given(8, 1, 1), given(14, 0, 2)], [session])).toEqual([])
+    expect(notes([given(12, 0, 7)], [{ ...session, start: 1, duration: 20 }, session])).toEqual([
+      'dose line 1 (in): dose 7 overlaps a dialysis session'
+    ])
+  })
+})
+
+test('more than 100,000 sessions are an issue before they are written', () => {
+  const often = { at: 0, duration: 0.001, clearance: 1, every: { value: 1, times: 1, per: 3600 } }
+  expect(tooManySessions([often], 1000, 'patient.sessions')).toEqual([
+    { path: 'patient.sessions[0].every', message: expect.stringContaining('at most 100000') }
+  ])
+  expect(tooManySessions([{ ...often, count: 3 }], 1000, 'patient.sessions')).toEqual([])
 })
