@@ -28,7 +28,9 @@ export async function open(
       response.writeHead(200, { 'content-type': 'application/json', 'cache-control': 'no-store' }).end(study)
       return
     }
-    files(request, response, () => response.writeHead(404).end())
+    files(request, response, () => {
+      response.writeHead(404).end()
+    })
   })
   const taken = await new Promise<NodeJS.ErrnoException | undefined>((done) => {
     server.once('error', done)

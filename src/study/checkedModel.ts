@@ -2,11 +2,10 @@ import type { DrugModel } from '../patient/drugModel'
 import { individual } from '../patient/individual'
 import { type CourseRequest, courseOf } from '../pk/course'
 import { valueAt } from '../pk/curve'
+import { exposureOf } from '../pk/exposure'
 import type { Issue } from '../pk/issue'
 import { isLinear } from '../pk/model'
 import { phasesOf } from '../pk/phases'
-import { steadyPeriodOf } from '../pk/steadyPeriod'
-import { steadyStateExposure } from '../pk/steadyState'
 import type { Subject } from '../pk/subject'
 import { fromCanonical } from '../units/quantity'
 import type { ModelCheck } from './modelCheck'
@@ -94,7 +93,7 @@ function atSteadyState(subject: Subject, check: ModelCheck, name: 'average' | 'a
   const request = requestOf(subject, check, until)
   const outcome = courseOf(request)
   if (!outcome.ok) return outcome.issues.map(({ message }) => message).join('; ')
-  const steady = steadyStateExposure(steadyPeriodOf(outcome.course, request), outcome.course, request, undefined)
+  const steady = exposureOf({ course: outcome.course, request, targets: [] }).steadyState
   return steady[name] ?? steady.why[name] ?? 'it is not defined'
 }
 

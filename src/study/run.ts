@@ -52,7 +52,8 @@ export function runStudy(study: Study): StudyOutcome {
       return
     }
     const { course } = outcome
-    const overLimits = dosesOverLimits(course, study.drugModel.drug.limits)
+    const infusionRoutes = study.drugModel.routes.filter(({ input }) => input === 'infusion').map(({ name }) => name)
+    const overLimits = dosesOverLimits(course, study.drugModel.drug.limits, infusionRoutes)
     regimens.push({
       name: regimen.name,
       course,
