@@ -10,6 +10,10 @@ export type NumericalFailureCode =
   | 'no-convergence'
   /** A function that was handed in yields NaN. */
   | 'not-a-number'
+  /** The integrator's steps fell below what time can resolve. */
+  | 'step-too-small'
+  /** The integrator used up its budget of steps. */
+  | 'too-many-steps'
 
 /** A computation on valid input that cannot give a number: thrown by `numerics`, caught where a run is put together. */
 export class NumericalFailure extends Error {
