@@ -133,6 +133,13 @@ describe('the words by which a weight is named', () => {
     expectWithin(value('adjustedAbove120PercentIdeal', person), expected[2]!, { relative: 1e-12 }, 'above 120 %')
   })
 
+  test('120 % itself still takes the ideal weight, also where 1.2 x ideal rounds down', () => {
+    const ideal = devine({ sex: 'male', height: 150 })
+    const typed = 57.392125984252
+    expect(typed).toBeGreaterThan(1.2 * ideal)
+    expect(value('adjustedAbove120PercentIdeal', body('male', typed, 150))).toBe(ideal)
+  })
+
   test('an ideal weight given directly stands for the computed one everywhere', () => {
     const person = body('male', 110, 177.8, { idealWeight: 60 })
     expect(value('ideal', person)).toBe(60)
