@@ -18,7 +18,7 @@ export interface RowTime {
 }
 
 /** A table of more sampling times than this is refused before it is computed. */
-export const MOST_ROWS = 5_000_000
+const MOST_ROWS = 5_000_000
 
 /** What is wrong with a sampling grid that would make too long a table. */
 export function tooManyRows(sampling: SamplingTimes, until: Hours): Issue | undefined {

@@ -13,7 +13,7 @@ export interface Session {
 }
 
 /** More sessions than this are refused before they are written out. */
-export const MOST_SESSIONS = 100_000
+const MOST_SESSIONS = 100_000
 
 /** Session lines that repeat too often to be written out, by their place under `path`. */
 export function tooManySessions(lines: readonly SessionLine[], until: Hours, path: string): Issue[] {
@@ -31,7 +31,7 @@ export function sessionsBefore(lines: readonly SessionLine[], until: Hours): Ses
 }
 
 /** Sessions of one line that start before `until`. */
-export function sessionsOfLine(line: SessionLine, until: Hours): Session[] {
+function sessionsOfLine(line: SessionLine, until: Hours): Session[] {
   const sessions: Session[] = []
   const last = line.every === undefined ? 1 : (line.count ?? Number.POSITIVE_INFINITY)
   for (let number = 1; number <= last; number++) {
