@@ -188,7 +188,7 @@ export class Rosenbrock {
   }
 
   #fail(code: NumericalFailureCode, why: string, time: number, h: number, state: Float64Array): never {
-    throw new RosenbrockFailure(code, why, time, h, state)
+    throw new RosenbrockFailure(code, { why, time, step: h, state: Array.from(state) })
   }
 }
 

@@ -157,9 +157,9 @@ describe('what cannot be integrated ends in a named failure', () => {
     )
     expect(failure).toBeInstanceOf(NumericalFailure)
     expect(failure.code).toBe('step-too-small')
-    expectWithin(failure.time, 1, { relative: 1e-4 })
-    expect(failure.state[0]).toBeGreaterThan(1e4)
-    expect(failure.message).toContain(`at time ${failure.time} with a step of ${failure.step}`)
+    expectWithin(failure.stop.time, 1, { relative: 1e-4 })
+    expect(failure.stop.state[0]).toBeGreaterThan(1e4)
+    expect(failure.message).toContain(`at time ${failure.stop.time} with a step of ${failure.stop.step}`)
   })
 
   test('a derivative that is not a number: not-a-number', () => {
@@ -196,7 +196,7 @@ describe('what cannot be integrated ends in a named failure', () => {
       10
     )
     expect(failure.code).toBe('too-many-steps')
-    expect(failure.time).toBeGreaterThan(0)
+    expect(failure.stop.time).toBeGreaterThan(0)
   })
 
   test('misuse is a RangeError', () => {
