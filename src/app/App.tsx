@@ -3,6 +3,7 @@ import { CautionLine } from './CautionLine'
 import { ConcentrationTable } from './ConcentrationTable'
 import { CurveCard } from './CurveCard'
 import { acceptDrops } from './drop'
+import { EstimatesCard } from './EstimatesCard'
 import { ExposureCard } from './ExposureCard'
 import { Header } from './Header'
 import { IssueList } from './IssueList'
@@ -34,6 +35,7 @@ export function App(props: { desk: StudyDesk }) {
               <Note page={page()} />
               <CurveCard chart={page().chart} />
               <ExposureCard desk={desk} grids={page().exposure} />
+              <EstimatesCard estimates={page().note.estimates} />
               <PhasesCard desk={desk} phases={page().phases} />
               <ConcentrationTable desk={desk} table={page().table} />
               <footer class="provenance">{page().provenance}</footer>

@@ -1,6 +1,5 @@
 import { For, Show } from 'solid-js'
 import type { PageView } from '../report/page/page'
-import { EstimatesTable } from './EstimatesTable'
 import { RegimenTag } from './RegimenTag'
 import { Words } from './Words'
 
@@ -37,7 +36,8 @@ export function Note(props: { page: PageView }) {
           <For each={note().population}>
             {(line) => (
               <li class={line.standing}>
-                <span class="chip">{STANDING[line.standing]}</span> {line.text}
+                <span class="chip">{STANDING[line.standing]}</span>
+                <span>{line.text}</span>
               </li>
             )}
           </For>
@@ -85,10 +85,6 @@ export function Note(props: { page: PageView }) {
             )}
           </For>
         </ul>
-      </section>
-      <section aria-labelledby="estimates">
-        <h2 id="estimates">Size and renal estimates</h2>
-        <EstimatesTable estimates={note().estimates} />
       </section>
     </article>
   )

@@ -1,5 +1,5 @@
 import { type Box, type Figure, pixel, type Shape } from './figure'
-import { logarithmicAxis } from './figureAxis'
+import { type Axis, logarithmicAxis } from './figureAxis'
 import { timeMarks } from './figureTime'
 import type { PhaseCurves } from './page/page'
 
@@ -8,7 +8,7 @@ const DEPTH = 1e-3
 
 /** The fall after a bolus on a log axis: the whole as a full line, each phase's part as a thin one that adds up to it. */
 export function phasesFigure(curves: PhaseCurves, width: number): Figure {
-  const plot: Box = { x: 44, y: 14, width: width - 44 - 12, height: Math.min(240, Math.max(170, width * 0.34)) }
+  const plot: Box = { x: 44, y: 14, width: width - 44 - 12, height: Math.min(300, Math.max(180, width * 0.4)) }
   const bottom = plot.y + plot.height
   const until = curves.times[curves.times.length - 1] ?? 1
   const y = logarithmicAxis(DEPTH, 1, bottom, plot.y)
@@ -52,7 +52,32 @@ export function phasesFigure(curves: PhaseCurves, width: number): Figure {
         ),
         { kind: 'path', look: 'whole', d: path(curves.total) }
       ]
-    }
+    },
+    ...curves.parts.map((part, k) => partLabel(part, k, curves.times, x, y, plot))
   ]
   return { width, height: bottom + 26, label: curves.label, shapes }
+}
+
+/** A phase is named on its line: where it leaves the plot below, or at the end of it. */
+function partLabel(
+  part: PhaseCurves['parts'][number],
+  k: number,
+  times: readonly number[],
+  x: (time: number) => number,
+  y: Axis,
+  plot: Box
+): Shape {
+  const bottom = plot.y + plot.height
+  const place = (at: number) => (part.values[at]! > 0 ? y.place(part.values[at]!) : Number.POSITIVE_INFINITY)
+  let last = times.length - 1
+  while (last > 0 && place(last) > bottom - 16) last--
+  const leaves = last < times.length - 1
+  return {
+    kind: 'text',
+    x: leaves ? x(times[last]!) + 8 : plot.x + plot.width,
+    y: leaves ? bottom - 14 - 15 * k : place(last) + 16,
+    anchor: leaves ? 'start' : 'end',
+    text: part.label,
+    look: 'label'
+  }
 }

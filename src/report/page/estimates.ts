@@ -1,13 +1,14 @@
 import { valueInWords } from '../../patient/covariateWords'
 import { type Overview, type OverviewRow, overview } from '../../patient/overview'
 import type { StudyResult } from '../../study/result'
-import type { EstimatesView } from './page'
+import { significant } from './number'
+import type { EstimateRow, EstimatesView } from './page'
 import { listed, polished, type Showing } from './showing'
 
 const GROUPS: readonly { readonly title: string; readonly parts: readonly (keyof Overview)[] }[] = [
   { title: 'Creatinine clearance', parts: ['creatinineClearances'] },
-  { title: 'GFR, per 1.73 m²', parts: ['indexedRates'] },
-  { title: 'GFR, absolute', parts: ['absoluteRates'] },
+  { title: 'Indexed GFR', parts: ['indexedRates'] },
+  { title: 'Absolute GFR', parts: ['absoluteRates'] },
   { title: 'Weight', parts: ['weights'] },
   { title: 'Body size', parts: ['bodyMassIndex', 'surfaceAreas'] }
 ]
@@ -19,11 +20,11 @@ export function estimatesView(result: StudyResult, showing: Showing): EstimatesV
   const columns =
     result.stretches.length === 1 ? [] : result.stretches.map(({ from }) => `from ${showing.typedTime(from)}`)
   const text = (row: OverviewRow) =>
-    row.estimate.kind === 'computed' ? polished(valueInWords(row.covariate, row.estimate.value, drugModel)) : '–'
+    row.estimate.kind === 'computed' ? shown(valueInWords(row.covariate, row.estimate.value, drugModel)) : '–'
   const groups = GROUPS.map(({ title, parts }) => {
     const stretches = overviews.map((each) => parts.flatMap((part) => each[part]))
     const labels = [...new Set(stretches.flatMap((rows) => rows.map((row) => row.label)))]
-    const rows: EstimatesView['groups'][number]['rows'][number][] = []
+    const rows: EstimateRow[] = []
     const missing: string[] = []
     for (const label of labels) {
       const found = stretches.map((all) => all.find((row) => row.label === label))
@@ -42,7 +43,36 @@ export function estimatesView(result: StudyResult, showing: Showing): EstimatesV
         usedBy: listed(used)
       })
     }
-    return { title, rows, missing: missing.length === 0 ? '' : `Not computed: ${missing.join('; ')}.` }
+    const unit = commonUnit(rows)
+    if (unit !== undefined) {
+      return {
+        title: `${title}, ${unit}`,
+        rows: rows.map((row) => ({
+          ...row,
+          values: row.values.map((cell) => (cell.computed ? { ...cell, text: cell.text.split('\u00a0')[0]! } : cell))
+        })),
+        missing: notComputed(missing)
+      }
+    }
+    return { title, rows, missing: notComputed(missing) }
   })
   return { columns, groups: groups.filter((group) => group.rows.length > 0 || group.missing !== '') }
+}
+
+/** All digits of three figures, so that a column lines up: 32 is 32.0. */
+function shown(words: string): string {
+  const [, number, unit = ''] = /^([\d.]+)(.*)$/.exec(polished(words)) ?? []
+  return number === undefined ? words : `${significant(Number(number))}${unit}`
+}
+
+/** The unit that every computed value of a group has, to be said once. */
+function commonUnit(rows: readonly EstimateRow[]): string | undefined {
+  const computed = rows.flatMap(({ values }) => values.filter((cell) => cell.computed))
+  const units = new Set(computed.map(({ text }) => text.split('\u00a0').slice(1).join('\u00a0')))
+  const [unit] = units
+  return units.size === 1 && unit !== '' ? unit : undefined
+}
+
+function notComputed(missing: readonly string[]): string {
+  return missing.length === 0 ? '' : `Not computed: ${missing.join('; ')}.`
 }

@@ -3,7 +3,7 @@ import { cell, cellOf, regimenColumns } from './grid'
 import { percent, shownUnit, significant, typed } from './number'
 import type { GridRow, GridView, RegimenLabel } from './page'
 import type { Showing } from './showing'
-import { targetHead, targetValue } from './targetWords'
+import { targetHead, targetNumber } from './targetWords'
 
 /** Intervals shown of one regimen; the file that can be taken away has them all. */
 const MOST_INTERVALS = 60
@@ -30,7 +30,7 @@ function targetsGrid(result: StudyResult, labels: readonly RegimenLabel[], showi
     const cells = result.regimens.map(({ exposure }) => {
       const judged = exposure.targets[index]
       if (judged?.met === undefined) return { text: '–', why: judged?.why ?? 'not evaluable' }
-      return { text: targetValue(judged, study, showing), met: judged.met }
+      return { text: targetNumber(judged, study, showing), met: judged.met }
     })
     return { head: targetHead(target, study, showing), cells }
   })

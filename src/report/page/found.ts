@@ -1,10 +1,11 @@
 import type { DistributionOver } from '../../pk/distribution'
+import type { TargetResult } from '../../pk/targetMet'
 import type { RegimenResult, StudyResult } from '../../study/result'
-import { significant, withUnit } from './number'
+import { shownUnit, significant } from './number'
 import type { RegimenLabel } from './page'
 import { type Marked, type Prose, strong, value } from './prose'
 import { listed, type Showing, sentence } from './showing'
-import { targetHead, targetValue } from './targetWords'
+import { outcomePhrase, targetHead } from './targetWords'
 
 /** What was found, in sentences: who meets the targets, what the others miss, when a level can be read, when steady state is near. */
 export function foundSentences(
@@ -21,45 +22,54 @@ export function foundSentences(
 
 function aboutTargets(result: StudyResult, labels: readonly RegimenLabel[], showing: Showing): Prose[] {
   if (result.study.targets.length === 0) return [['No target is stated, so no regimen can meet or miss one.']]
-  const verdicts = result.regimens.map(({ exposure }, k) => ({
-    label: labels[k]!,
-    missed: exposure.targets.filter((target) => target.met === false),
-    open: exposure.targets.filter((target) => target.met === undefined),
-    met: exposure.targets.filter((target) => target.met === true)
-  }))
+  const verdicts = result.regimens.map(
+    ({ exposure }, k): Verdict => ({
+      label: labels[k]!,
+      missed: exposure.targets.filter((target) => target.met === false),
+      open: exposure.targets.filter((target) => target.met === undefined),
+      met: exposure.targets.filter((target) => target.met === true)
+    })
+  )
   const winners = verdicts.filter(({ missed, open }) => missed.length === 0 && open.length === 0)
   const lead: (string | Marked)[] =
     winners.length === 0
       ? [strong('No regimen meets every target.')]
-      : [strong(`${listed(winners.map(named))} ${winners.length === 1 ? 'meets' : 'meet'} every target.`)]
+      : [strong(`${listed(winners.map(named))} ${winners.length === 1 ? 'meets' : 'meet'} every target`)]
   const [only] = winners
   if (winners.length === 1 && only !== undefined) {
     only.met.forEach((target, k) => {
-      lead.push(k === 0 ? ' ' : '; ', `${targetHead(target.target, result.study, showing)}: `)
-      lead.push(value(targetValue(target, result.study, showing)))
+      lead.push(k === 0 ? ': ' : ', ', ...outcomePhrase(target, result.study, showing).said)
     })
-    lead.push('.')
   }
+  if (winners.length > 0) lead.push('.')
   const others = verdicts.filter((verdict) => !winners.includes(verdict))
-  return [
-    lead,
-    ...others.map((verdict): Prose => {
-      const prose: (string | Marked)[] = [strong(named(verdict))]
-      if (verdict.missed.length > 0) prose.push(` misses ${verdict.missed.length} of ${result.study.targets.length}: `)
-      verdict.missed.forEach((target, k) => {
-        prose.push(k === 0 ? '' : '; ', value(targetValue(target, result.study, showing)))
-        prose.push(` where ${lowered(targetHead(target.target, result.study, showing))} is asked`)
-      })
-      for (const target of verdict.open) {
-        prose.push(verdict.missed.length > 0 ? '; ' : ': ')
-        prose.push(
-          `${lowered(targetHead(target.target, result.study, showing))} cannot be judged (${target.why ?? 'not defined'})`
-        )
-      }
-      prose.push('.')
-      return prose
-    })
-  ]
+  return [lead, ...others.map((verdict) => aboutMisses(verdict, result, showing))]
+}
+
+interface Verdict {
+  readonly label: RegimenLabel
+  readonly missed: readonly TargetResult[]
+  /** Those that cannot be judged. */
+  readonly open: readonly TargetResult[]
+  readonly met: readonly TargetResult[]
+}
+
+function aboutMisses(verdict: Verdict, result: StudyResult, showing: Showing): Prose {
+  const { study } = result
+  const prose: (string | Marked)[] = [strong(named(verdict))]
+  if (verdict.missed.length > 0) prose.push(` misses ${verdict.missed.length} of ${study.targets.length}: `)
+  verdict.missed.forEach((target, k) => {
+    const { said, asked } = outcomePhrase(target, study, showing)
+    prose.push(k === 0 ? '' : ', ', ...said, ` (asked: ${asked})`)
+  })
+  verdict.open.forEach((target, k) => {
+    prose.push(k > 0 || verdict.missed.length > 0 ? '; ' : ': ')
+    prose.push(
+      `${lowered(targetHead(target.target, study, showing))} cannot be judged (${target.why ?? 'not defined'})`
+    )
+  })
+  prose.push('.')
+  return prose
 }
 
 /** `C (500 mg every 24 h)`. */
@@ -101,14 +111,18 @@ function reasons(without: readonly DistributionOver[]): string[] {
 function aboutSteadyState(result: StudyResult, labels: readonly RegimenLabel[], showing: Showing): Prose[] {
   const reached = result.regimens.flatMap(({ exposure }: RegimenResult, k) => {
     const hours = exposure.steadyState.reached90
-    return hours === undefined ? [] : [`${labels[k]!.letter} ${significant(showing.time(hours))}`]
+    return hours === undefined ? [] : [`${labels[k]!.letter}\u00a0${significant(showing.time(hours))}`]
   })
   if (reached.length === 0) return []
   return [
     [
       '90\u00a0% of steady state is reached after ',
-      value(withUnit(listed(reached), showing.timeUnit)),
-      ', by accumulation and not by half-lives, if nothing changed any more.'
+      ...listedValues(reached),
+      `\u00a0${shownUnit(showing.timeUnit)}, by accumulation and not by half-lives, if nothing changed any more.`
     ]
   ]
+}
+
+function listedValues(items: readonly string[]): (string | Marked)[] {
+  return items.flatMap((item, k) => [k === 0 ? '' : k === items.length - 1 ? ' and ' : ', ', value(item)])
 }

@@ -1,7 +1,7 @@
 import { equation } from '../../patient/equation'
 import type { ParameterValue } from '../../patient/parameterValues'
 import type { IndividualStretch, StudyResult } from '../../study/result'
-import { significant, withUnit } from './number'
+import { brief, withUnit } from './number'
 import type { ModelView } from './page'
 import { type Marked, type Prose, raised, symbol, value } from './prose'
 import { listed, polished, type Showing, sentence } from './showing'
@@ -33,7 +33,7 @@ function parameters(values: readonly ParameterValue[]): (string | Marked)[] {
     ...(k === 0 ? [] : [k === values.length - 1 ? ' and ' : ', ']),
     symbol(parameter.label),
     '\u00a0',
-    value(withUnit(significant(parameter.stated), parameter.unit))
+    value(withUnit(brief(parameter.stated), parameter.unit))
   ])
 }
 

@@ -21,6 +21,11 @@ export function typed(x: number): string {
   return grouped(plainDecimal(Number(x.toPrecision(12))))
 }
 
+/** A number as it was typed where three figures hold it, else to three significant figures. */
+export function brief(x: number): string {
+  return Number(x.toPrecision(3)) === x ? typed(x) : significant(x)
+}
+
 /** A share of time or exposure in per cent. A share that is not quite whole or none is never rounded to 100 or 0. */
 export function percent(share: number): string {
   if (share > 0 && share < 0.001) return `under${JOIN}0.1${JOIN}%`

@@ -14,7 +14,11 @@ const STANDING: Readonly<Partial<Record<Finding['kind'], PopulationLine['standin
 export function populationLines(result: StudyResult): readonly PopulationLine[] {
   const lines = result.findings.map((finding): PopulationLine | undefined => {
     const standing = STANDING[finding.kind]
-    if (standing !== undefined) return { standing, text: sentence(polished(finding.text)) }
+    if (standing !== undefined) {
+      // The line begins with the standing, so that its sentence need not say it again.
+      const short = finding.text.replace(' is inside the studied range; studied: ', '; studied: ')
+      return { standing, text: sentence(polished(short)) }
+    }
     // Cautions stand in their own list, over everything.
     return finding.severity === 'note' ? { standing: 'note', text: sentence(polished(finding.text)) } : undefined
   })

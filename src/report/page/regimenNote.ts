@@ -6,7 +6,7 @@ import type { RegimenLabel, RegimenNote } from './page'
 import { type Marked, value } from './prose'
 import { listed, polished, type Showing, sentence } from './showing'
 
-/** A regimen in words: each line of doses, what became of it, and what was done with the prescription. */
+/** A regimen in words: each line of doses with what became of them, and what was done with the prescription. */
 export function regimenNote(
   regimen: RegimenResult,
   label: RegimenLabel,
@@ -20,10 +20,6 @@ export function regimenNote(
     const before = prescription.lines[k - 1]
     prose.push(...(k === 0 ? [] : [', then ']), ...lineInWords(line, k, before, regimen, result, showing))
   })
-  const departures = prescription.lines.flatMap((line, k) =>
-    line.exceptions.map((exception) => departureInWords(exception, prescription.lines.length > 1, k, showing))
-  )
-  if (departures.length > 0) prose.push(`; ${listed(departures)}`)
   prose.push('.')
   return { label, sentence: prose, notes: regimen.notes.map((note) => sentence(polished(note))) }
 }
@@ -60,6 +56,9 @@ function lineInWords(
     prose.push(' from ', value(showing.typedTime(line.at)))
     if (line.count !== undefined) prose.push(', ', value(line.count === 1 ? 'once' : `${line.count} times`))
   }
+  if (line.exceptions.length > 0) {
+    prose.push(' (', value(listed(line.exceptions.map((exception) => departureInWords(exception, showing)))), ')')
+  }
   return prose
 }
 
@@ -79,8 +78,8 @@ const WEIGHTS = {
   adjustedAbove120PercentIdeal: 'adjusted, above 120\u00a0% of ideal,'
 } as const
 
-function departureInWords(exception: Exception, several: boolean, line: number, showing: Showing): string {
-  const which = several ? `dose\u00a0${exception.number} of line\u00a0${line + 1}` : `dose\u00a0${exception.number}`
+function departureInWords(exception: Exception, showing: Showing): string {
+  const which = `dose\u00a0${exception.number}`
   if (exception.missed === true) return `${which} missed`
   const said: string[] = []
   if (exception.lateBy !== undefined) {

@@ -65,10 +65,14 @@ export function listed(items: readonly string[]): string {
   return `${items.slice(0, -1).join(', ')} and ${items[items.length - 1]}`
 }
 
+/** A number and what it is a number of, between which no line breaks. */
+const NUMBER_AND_UNIT =
+  /(\d) (?=(?:%|years?|months?|weeks?|days?|kg|[mµun]?g|[mun]?mol|[md]?L|h|min|s|d|wk|cm|m2)(?:\/[\w.]+)*(?![\w]))/g
+
 /** Text of the core as people write it: no break between number and unit, m², multiplication signs. */
 export function polished(text: string): string {
   return text
-    .replace(/(\d) (?=(?:years|months|weeks|days|[a-zA-Zµ%]+(?:\/[a-zA-Z0-9.]+)*)(?:\b|$|%))/g, '$1\u00a0')
+    .replace(NUMBER_AND_UNIT, '$1\u00a0')
     .replace(/1\.73 m2/g, '1.73\u00a0m²')
     .replace(/\bm2\b/g, 'm²')
     .replace(/(?<=[\d)]) x (?=[\d(A-Za-z])/g, ' × ')

@@ -27,8 +27,44 @@ export function targetHead(target: Target, study: Study, showing: Showing): stri
   return `${begin}${signalName(target, study)} ${limits}${unbound}${rest}, ${whenInWords(target.when)}`
 }
 
+/**
+ * What a regimen gave against a target, in a phrase: `in the window 96.7 % of the time from the first dose on`,
+ * `highest trough 14.7 mg/L`; and what was asked.
+ */
+export function outcomePhrase(result: TargetResult, study: Study, showing: Showing): { said: Prose; asked: string } {
+  const { target } = result
+  const worst = value(targetValue(result, study, showing))
+  const when = ON_ALL.includes(target.when.kind) ? '' : ` ${whenInWords(target.when)}`
+  const unbound = isUnbound(target, study) ? 'unbound ' : ''
+  if (isShare(target)) {
+    const where =
+      target.kind === 'window'
+        ? 'in the window'
+        : target.kind === 'time-above'
+          ? `above ${limit(target, target.low, study, showing)}`
+          : `below ${limit(target, target.high, study, showing)}`
+    return { said: [`${unbound}${where} `, worst, ` of the time${when}`], asked: `at least ${percent(target.share)}` }
+  }
+  const { begin } = parts(target, study, showing)
+  const name = begin.startsWith('AUC') ? begin : begin.toLowerCase()
+  const which =
+    when !== '' ? '' : target.low === undefined ? 'highest ' : target.high === undefined ? 'lowest ' : 'worst '
+  return { said: [`${which}${unbound}${name} `, worst, when], asked: limitsInWords(target, study, showing) }
+}
+
+/** Stretches of which the worst is reported. */
+const ON_ALL: readonly When['kind'][] = ['every-interval', 'every-day']
+
 /** The worst value that a regimen gives, with digits enough that it falls on the side of the limit that it is on. */
 export function targetValue(result: TargetResult, study: Study, showing: Showing): string {
+  const { target, value: worst } = result
+  const number = targetNumber(result, study, showing)
+  if (worst === undefined || isShare(target)) return number
+  return withUnit(number, inUnit(target, worst, study, showing).unit)
+}
+
+/** The same without its unit, for where the limits beside it carry that. */
+export function targetNumber(result: TargetResult, study: Study, showing: Showing): string {
   const { target, value: worst } = result
   if (worst === undefined) return '–'
   if (isShare(target)) return percent(worst)
@@ -39,9 +75,9 @@ export function targetValue(result: TargetResult, study: Study, showing: Showing
     const high = target.high === undefined ? undefined : inUnit(target, target.high, study, showing).number
     const sameSide = (limit: number | undefined) =>
       limit === undefined || Math.sign(rounded - limit) === Math.sign(shown.number - limit)
-    if (sameSide(low) && sameSide(high)) return withUnit(significant(shown.number, digits), shown.unit)
+    if (sameSide(low) && sameSide(high)) return significant(shown.number, digits)
   }
-  return withUnit(typed(shown.number), shown.unit)
+  return typed(shown.number)
 }
 
 /** Whether the target asks for a share of time. */
