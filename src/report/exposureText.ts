@@ -4,8 +4,35 @@ import { STEADY_STATE_NAMES, whenWord } from './exposureDocument'
 import { nameAndUnit } from './longTable'
 import { alignedRows, plainNumber, plainPercent } from './plainText'
 
-/** Quantities of the steady state that are shares of time. */
-const SHARES = new Set(['timeInWindow', 'timeAbove', 'timeBelow'])
+type SteadyStateName = keyof typeof STEADY_STATE_NAMES
+
+/** What each value of the steady state is called on a terminal, in the order in which they are printed. */
+const STEADY_STATE_WORDS: readonly (readonly [SteadyStateName, string])[] = [
+  ['period', 'period'],
+  ['auc', 'AUC of a period'],
+  ['auc24', 'AUC over 24 h at steady state'],
+  ['peak', 'peak'],
+  ['peakTime', 'peak, after the start of the period'],
+  ['trough', 'trough'],
+  ['minimum', 'minimum'],
+  ['average', 'average'],
+  ['fluctuation', 'fluctuation'],
+  ['swing', 'swing'],
+  ['accumulationRatio', 'accumulation ratio (AUC)'],
+  ['peakRatio', 'ratio of peaks'],
+  ['troughRatio', 'ratio of troughs'],
+  ['effectiveHalfLife', 'effective half-life'],
+  ['operationalHalfLife', 'operational half-life'],
+  ['reached90', '90 % of steady state reached (AUC)'],
+  ['reached90ByTrough', '90 % of steady state reached (trough)'],
+  ['reached90OfChange', '90 % of the change of dose reached'],
+  ['timeInWindow', 'time in window'],
+  ['timeAbove', 'time above window'],
+  ['timeBelow', 'time below window']
+]
+
+/** Those that are shares of time. */
+const SHARES: ReadonlySet<SteadyStateName> = new Set(['timeInWindow', 'timeAbove', 'timeBelow'])
 
 /** The exposure as it is read on a terminal: three significant figures, a reason for each dash. */
 export function exposureText(result: StudyResult): string {
@@ -67,19 +94,17 @@ function regimenText(regimen: RegimenResult): string[] {
 
 function steadyStateText(regimen: RegimenResult): string[] {
   const { steadyState } = regimen.exposure
-  const entries = Object.entries(STEADY_STATE_NAMES) as [keyof typeof STEADY_STATE_NAMES, string][]
-  const rows = entries.map(([name, shown]) => {
-    const { quantity, unit } = nameAndUnit(shown)
+  const rows = STEADY_STATE_WORDS.map(([name, words]) => {
     const value = steadyState[name]
-    const number = SHARES.has(name) ? plainPercent(value) : plainNumber(value)
+    const { unit } = nameAndUnit(STEADY_STATE_NAMES[name])
     return {
-      cells: [quantity, number, unit === '1' ? '' : unit],
-      why: value === undefined ? steadyState.why[name] : ''
+      cells: [words, SHARES.has(name) ? plainPercent(value) : plainNumber(value), unit === '1' ? '' : unit],
+      why: value === undefined ? steadyState.why[name] : undefined
     }
   })
   return alignedRows(rows.map((row) => row.cells)).map((line, i) => {
     const why = rows[i]?.why
-    return why ? `${line}  ${why}` : line
+    return why === undefined ? line : `${line}  ${why}`
   })
 }
 

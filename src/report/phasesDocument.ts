@@ -17,6 +17,8 @@ export const STRETCH_NAMES = {
 /** `phases --json`: per stretch between patient changes the phases and moments, per regimen when distribution is over. */
 export function phasesDocument(result: StudyResult): object {
   return {
+    /** Clearance and volumes contain 1/F. */
+    apparent: result.study.drugModel.apparent,
     stretches: result.phases.map((stretch) => ({
       from_h: stretch.from,
       to_h: stretch.to,

@@ -7,7 +7,7 @@ import { STRETCH_NAMES } from './phasesDocument'
 /** The phases of every stretch and when distribution is over in every interval, one value a row. */
 export function phasesRows(result: StudyResult): LongRow[] {
   return [
-    ...result.phases.flatMap(stretchRows),
+    ...result.phases.flatMap((stretch) => stretchRows(stretch, result.study.drugModel.apparent)),
     ...result.regimens.flatMap((_, index) => distributionRows(result, index))
   ]
 }
@@ -17,7 +17,7 @@ export function phasesCsv(result: StudyResult): string {
   return csvRows([LONG_COLUMNS.map((column) => column.name), ...phasesRows(result).map(longCells)])
 }
 
-function stretchRows(stretch: PhasesOfStretch): LongRow[] {
+function stretchRows(stretch: PhasesOfStretch, apparent: boolean): LongRow[] {
   const place = { regimen: '', from: stretch.from, to: stretch.to, note: '' }
   const rows: LongRow[] = stretch.phases.flatMap((phase, i) => {
     const over = `phase ${i + 1}${i === stretch.rulingPhase ? ', ruling' : ''}`
@@ -32,7 +32,8 @@ function stretchRows(stretch: PhasesOfStretch): LongRow[] {
     rows.push({ ...place, over: rate.name, quantity: 'rate', value: rate.rate, unit: '/h' })
   }
   const { rulingPhase: _, ...names } = STRETCH_NAMES
-  rows.push(...rowsOfGroup(stretch, names, { ...place, over: 'disposition' }))
+  const over = apparent ? 'disposition, volumes and clearance over F' : 'disposition'
+  rows.push(...rowsOfGroup(stretch, names, { ...place, over }))
   stretch.names.forEach((to, i) => {
     stretch.names.forEach((from, j) => {
       const value = stretch.matrix[i]?.[j]

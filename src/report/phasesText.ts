@@ -5,10 +5,24 @@ import { nameAndUnit } from './longTable'
 import { STRETCH_NAMES } from './phasesDocument'
 import { alignedRows, plainNumber, plainPercent } from './plainText'
 
+/** What each value of a stretch is called on a terminal. */
+const STRETCH_WORDS: Readonly<Record<keyof typeof STRETCH_NAMES, string>> = {
+  rulingPhase: 'ruling phase',
+  stiffness: 'stiffness, largest over smallest eigenvalue',
+  longestExplicitStep: 'longest stable step of an explicit method',
+  explicitSteps: 'such steps to the end',
+  vss: 'Vss',
+  vz: 'Vz',
+  mrt: 'MRT',
+  clearance: 'CL',
+  terminalHalfLife: 'terminal half-life'
+}
+
 /** The phases as they are read on a terminal: three significant figures, a reason for each dash. */
 export function phasesText(result: StudyResult): string {
   const lines = [result.study.title, '']
-  for (const stretch of result.phases) lines.push(...stretchText(stretch), '')
+  const apparent = result.study.drugModel.apparent
+  for (const stretch of result.phases) lines.push(...stretchText(stretch, apparent), '')
   for (const regimen of result.regimens) {
     lines.push(
       `${regimen.name}: distribution is over, hours after the end of the input`,
@@ -27,7 +41,10 @@ export function phasesText(result: StudyResult): string {
   return `${lines.join('\n')}\n`
 }
 
-function stretchText(stretch: PhasesOfStretch): string[] {
+/** Values that contain the bioavailability where the model's parameters do. */
+const APPARENT = new Set<keyof typeof STRETCH_NAMES>(['vss', 'vz', 'clearance'])
+
+function stretchText(stretch: PhasesOfStretch, apparent: boolean): string[] {
   const matrix = alignedRows([
     ['rate matrix, /h', ...stretch.names.map((name) => `from ${name}`)],
     ...stretch.names.map((name, i) => [`into ${name}`, ...(stretch.matrix[i] ?? []).map(plainNumber)]),
@@ -51,8 +68,9 @@ function stretchText(stretch: PhasesOfStretch): string[] {
     entries
       .filter(([name]) => name !== 'rulingPhase')
       .map(([name, shown]) => {
-        const { quantity, unit } = nameAndUnit(shown)
-        return [quantity, plainNumber(stretch[name]), unit === '1' ? '' : unit, stretch.why[name] ?? '']
+        const { unit } = nameAndUnit(shown)
+        const words = apparent && APPARENT.has(name) ? `${STRETCH_WORDS[name]}/F` : STRETCH_WORDS[name]
+        return [words, plainNumber(stretch[name]), unit === '1' ? '' : unit, stretch.why[name] ?? '']
       })
   )
   return [

@@ -1,3 +1,4 @@
+import { weightFindings } from '../patient/findings'
 import { findingsOverTime } from '../patient/overTime'
 import { type CourseRequest, courseOf } from '../pk/course'
 import { distributionOver } from '../pk/distribution'
@@ -8,6 +9,7 @@ import { isLinear } from '../pk/model'
 import { OperatorStore } from '../pk/operatorStore'
 import { type PhasesOfStretch, phasesOf } from '../pk/phases'
 import { tooManyRows } from '../pk/profileTimes'
+import type { WeightDescriptor } from '../pk/subject'
 import { regimenCautions, studyCautions } from './cautions'
 import { failedChecks } from './checkedModel'
 import { individualsOf } from './individuals'
@@ -73,7 +75,8 @@ export function runStudy(study: Study): StudyOutcome {
 
   const findings = [
     ...stretches.flatMap(({ individual }) => individual.findings),
-    ...findingsOverTime(study.drugModel, study.people, study.sampling.until)
+    ...findingsOverTime(study.drugModel, study.people, study.sampling.until),
+    ...study.people.flatMap(({ person }) => weightFindings(weightWords(study), person, study.drugModel))
   ]
   return {
     ok: true,
@@ -86,6 +89,11 @@ export function runStudy(study: Study): StudyOutcome {
       cautions: studyCautions(study, findings, cautions)
     }
   }
+}
+
+/** The words by which doses name a weight. */
+function weightWords(study: Study): readonly WeightDescriptor[] {
+  return study.regimens.flatMap(({ lines }) => lines.flatMap(({ by }) => by ?? []))
 }
 
 /** The phases of every stretch of a linear model, with the periods and infusion lengths of all regimens. */
