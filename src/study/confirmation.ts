@@ -1,4 +1,4 @@
-import { integrate } from '../pk/integrate'
+import { INTEGRATION_WITNESS, integrate } from '../pk/integrate'
 import { rowTimes } from '../pk/profileTimes'
 import { type Witness, witness } from '../pk/witness'
 import type { StudyResult } from './result'
@@ -8,13 +8,10 @@ export interface Confirmation extends Witness {
   readonly regimen: string
 }
 
-/** How closely the second method follows a linear model. */
-const SECOND_METHOD = { relative: 1e-11 }
-
 /** Every regimen computed again by the implicit integrator and compared at the times of its table. */
 export function confirm(result: StudyResult): readonly Confirmation[] {
   return result.regimens.map(({ name, course }) => {
-    const again = integrate(course.segments, course.initial, SECOND_METHOD)
+    const again = integrate(course.segments, course.initial, INTEGRATION_WITNESS)
     const times = [...rowTimes(course, result.study.sampling)].map(({ time }) => time)
     return { regimen: name, ...witness(course.trajectory, again, times) }
   })
