@@ -60,7 +60,10 @@ describe('a spelling that is not UCUM', () => {
       ['concentration', 'mg/hL'],
       ['filtration', 'mL/min/1.73m2'],
       ['indexedFiltration', 'mL/min'],
-      ['bodyWeight', 'lb']
+      ['bodyWeight', 'lb'],
+      // Names that every object has.
+      ['amount', 'constructor'],
+      ['amount', 'toString/hasOwnProperty']
     ] as const) {
       expect(nearestUnit(kind, typed), typed).toBeUndefined()
     }

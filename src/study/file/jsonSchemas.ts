@@ -1,6 +1,7 @@
 import { z } from 'zod'
-import { modelSchema } from './modelSchema'
-import { wholeStudySchema } from './studySchema'
+import { model } from './modelSchema'
+import { TAKING_OWN_COVARIATES } from './patientSchema'
+import { wholeStudy } from './studySchema'
 
 /**
  * The JSON Schemas of both file formats by file name, for editors. They hold what a schema can say: keys, types, units
@@ -8,13 +9,21 @@ import { wholeStudySchema } from './studySchema'
  */
 export function jsonSchemas(): Readonly<Record<string, string>> {
   return {
-    'model.schema.json': written('A Phasewise model file', modelSchema('any')),
-    'study.schema.json': written('A Phasewise study file', wholeStudySchema())
+    'model.schema.json': written('A Phasewise model file', model),
+    'study.schema.json': written('A Phasewise study file', wholeStudy)
   }
 }
 
 function written(title: string, schema: z.ZodType): string {
-  const generated = z.toJSONSchema(schema, { io: 'input', unrepresentable: 'any', target: 'draft-2020-12' })
+  const generated = z.toJSONSchema(schema, {
+    io: 'input',
+    unrepresentable: 'any',
+    target: 'draft-2020-12',
+    override: ({ zodSchema, jsonSchema }) => {
+      // The model's own covariates stand there too; a schema cannot know their names.
+      if (TAKING_OWN_COVARIATES.includes(zodSchema)) jsonSchema.additionalProperties = {}
+    }
+  })
   const { $schema, ...rest } = generated
   return `${JSON.stringify({ $schema, title, ...rest }, null, 2)}\n`
 }

@@ -1,7 +1,7 @@
 import { z } from 'zod'
 import type { Sign } from '../unitProblem'
 import { dose, weightWord } from './doseSchema'
-import { checkedPersonSchema, type OwnCovariates } from './patientSchema'
+import { checkedPerson } from './patientSchema'
 import { quantity, quantityOfSomeKind } from './quantitySchema'
 import { name, prose, title } from './textSchema'
 
@@ -197,54 +197,47 @@ const route = z.strictObject({
   input: z.enum(['infusion', 'bolus']).optional()
 })
 
-function check(own: OwnCovariates) {
-  return z.strictObject({
-    what: name,
-    patient: checkedPersonSchema(own),
-    doses: z.array(dose).min(1).optional(),
-    at: quantity('time', 'not negative').optional(),
-    expected: quantityOfSomeKind(['h', 'mg/L']),
-    relativeTolerance: z.number().gt(0).max(1),
-    from: z.enum(['printed in the source', 'closed form', 'independent code'])
-  })
-}
+const check = z.strictObject({
+  what: name,
+  patient: checkedPerson,
+  doses: z.array(dose).min(1).optional(),
+  at: quantity('time', 'not negative').optional(),
+  expected: quantityOfSomeKind(['h', 'mg/L']),
+  relativeTolerance: z.number().gt(0).max(1),
+  from: z.enum(['printed in the source', 'closed form', 'independent code'])
+})
 
-/** A model file, given the names of the covariates that it declares for itself. */
-export function modelSchema(own: OwnCovariates) {
-  return z.strictObject({
-    $schema: z.string().optional(),
-    format: z.literal('phasewise-model'),
-    version: z.literal(1),
-    id: name,
-    title,
-    drug,
-    apparent: z.boolean().optional(),
-    source,
-    studied: z
-      .strictObject({ subjects: z.int().min(1).optional(), description: prose, ranges: z.array(range).optional() })
-      .optional(),
-    valid: z.array(range).optional(),
-    covariates: covariates.optional(),
-    parameters: z.record(name, parameter),
-    correlations: z.array(z.strictObject({ between: pair, value: z.number().min(-1).max(1) })).optional(),
-    residual: z
-      .strictObject({
-        proportionalSd: z.number().min(0).optional(),
-        additiveSd: quantity('concentration', 'not negative').optional()
-      })
-      .optional(),
-    typicalUncertainty: z.strictObject({ relativeSe: z.record(name, z.number().min(0)) }).optional(),
-    compartments: z
-      .array(z.strictObject({ id: name, volume: name.optional(), observed: z.boolean().optional() }))
-      .min(1),
-    transfers: z.array(transfer),
-    observations: z.array(z.strictObject({ id: name, of: z.array(name).min(1) })).optional(),
-    routes: z.array(route).min(1),
-    checks: z.array(check(own)).optional()
-  })
-}
+export const model = z.strictObject({
+  $schema: z.string().optional(),
+  format: z.literal('phasewise-model'),
+  version: z.literal(1),
+  id: name,
+  title,
+  drug,
+  apparent: z.boolean().optional(),
+  source,
+  studied: z
+    .strictObject({ subjects: z.int().min(1).optional(), description: prose, ranges: z.array(range).optional() })
+    .optional(),
+  valid: z.array(range).optional(),
+  covariates: covariates.optional(),
+  parameters: z.record(name, parameter),
+  correlations: z.array(z.strictObject({ between: pair, value: z.number().min(-1).max(1) })).optional(),
+  residual: z
+    .strictObject({
+      proportionalSd: z.number().min(0).optional(),
+      additiveSd: quantity('concentration', 'not negative').optional()
+    })
+    .optional(),
+  typicalUncertainty: z.strictObject({ relativeSe: z.record(name, z.number().min(0)) }).optional(),
+  compartments: z.array(z.strictObject({ id: name, volume: name.optional(), observed: z.boolean().optional() })).min(1),
+  transfers: z.array(transfer),
+  observations: z.array(z.strictObject({ id: name, of: z.array(name).min(1) })).optional(),
+  routes: z.array(route).min(1),
+  checks: z.array(check).optional()
+})
 
-export type ModelFile = z.infer<ReturnType<typeof modelSchema>>
+export type ModelFile = z.infer<typeof model>
 export type ParameterFile = z.infer<typeof parameter>
 export type FactorFile = z.infer<typeof factor>
 export type RangeFile = z.infer<typeof range>

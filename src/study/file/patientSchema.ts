@@ -24,8 +24,6 @@ const typed = {
   absoluteGfr: quantity('filtration', 'not negative').optional()
 }
 
-const ownCovariate = z.unknown().optional()
-
 const session = z.strictObject({
   at: quantity('time', 'not negative'),
   for: quantity('time'),
@@ -34,34 +32,19 @@ const session = z.strictObject({
   count: z.int().min(1).optional()
 })
 
-const person = { sex: z.enum(['female', 'male']).optional(), ...typed }
-const change = { at: quantity('time', 'not negative'), ...typed }
-
-/** Declared covariates of a model by name; `any` where no model is at hand, and every unknown key passes for one. */
-export type OwnCovariates = readonly string[] | 'any'
-
-/** A patient. The values of the model's own covariates are checked against the model later. */
-export function patientSchema(own: OwnCovariates) {
-  return withOwn(
-    { ...person, changes: z.array(withOwn(change, own)).optional(), sessions: z.array(session).optional() },
-    own
-  )
-}
-
 /** The person whom a model's check is about. */
-export function checkedPersonSchema(own: OwnCovariates) {
-  return withOwn(person, own)
-}
+export const checkedPerson = z.strictObject({ sex: z.enum(['female', 'male']).optional(), ...typed })
 
-/** Strict but for the model's own covariates; the type leaves them out, code reads them by name. */
-function withOwn<T extends z.ZodRawShape>(shape: T, own: OwnCovariates): z.ZodObject<T, z.core.$strict> {
-  if (own === 'any') return z.object(shape).catchall(ownCovariate) as unknown as z.ZodObject<T, z.core.$strict>
-  return z.strictObject({
-    ...Object.fromEntries(own.map((key) => [key, ownCovariate])),
-    ...shape
-  }) as unknown as z.ZodObject<T, z.core.$strict>
-}
+const change = z.strictObject({ at: quantity('time', 'not negative'), ...typed })
 
-export type PatientFile = z.infer<ReturnType<typeof patientSchema>>
-export type PersonFile = z.infer<ReturnType<typeof checkedPersonSchema>>
-export type ChangeFile = NonNullable<PatientFile['changes']>[number]
+export const patient = checkedPerson.extend({
+  changes: z.array(change).optional(),
+  sessions: z.array(session).optional()
+})
+
+/** Beside their own keys these take the model's own covariates, whose values are checked against the model later. */
+export const TAKING_OWN_COVARIATES: readonly unknown[] = [checkedPerson, change, patient]
+
+export type PatientFile = z.infer<typeof patient>
+export type PersonFile = z.infer<typeof checkedPerson>
+export type ChangeFile = z.infer<typeof change>

@@ -8,7 +8,7 @@ import { resolveChecks } from '../resolveChecks'
 import { type ResolvedModel, resolveModel } from '../resolveModel'
 import { decode } from './decode'
 import { readJson } from './json'
-import { type ModelFile, modelSchema } from './modelSchema'
+import { type ModelFile, model } from './modelSchema'
 import { checkShape } from './shape'
 
 export type ModelReading =
@@ -31,9 +31,9 @@ export function readModel(bytes: Uint8Array | string): ModelReading {
   if (!('value' in json)) return { ok: false, issues: json.issues }
   const problems = new Problems()
   for (const { path, message } of json.issues) problems.add(path, message)
-  const model = readModelValue(json.value, [], problems)
-  if (problems.issues.length > 0 || model === undefined) return { ok: false, issues: problems.issues }
-  return { ok: true, drugModel: model.resolved.drugModel, checks: model.checks, file: model.file }
+  const read = readModelValue(json.value, [], problems)
+  if (problems.issues.length > 0 || read === undefined) return { ok: false, issues: problems.issues }
+  return { ok: true, drugModel: read.resolved.drugModel, checks: read.checks, file: read.file }
 }
 
 /** A model from a value already read from JSON; undefined where its shape is past reading. All problems are listed. */
@@ -42,7 +42,7 @@ export function readModelValue(
   at: readonly Step[],
   problems: Problems
 ): { readonly file: ModelFile; readonly resolved: ResolvedModel; readonly checks: readonly ModelCheck[] } | undefined {
-  checkShape(modelSchema(ownCovariates(raw)), raw, at, problems)
+  checkShape({ schema: model, raw, at, own: ownCovariates(raw), problems })
   const path = formatPath(at)
   if (!problems.isOpen(path)) return undefined
   const file = raw as ModelFile

@@ -6,10 +6,9 @@ import { resolveStudy } from '../resolveStudy'
 import type { Study } from '../study'
 import { decode } from './decode'
 import { readJson } from './json'
-import type { OwnCovariates } from './patientSchema'
 import { ownCovariates, readModelValue } from './readModel'
-import { checkShape } from './shape'
-import { type StudyFile, studySchema } from './studySchema'
+import { checkShape, type OwnCovariates } from './shape'
+import { type StudyFile, study } from './studySchema'
 
 export type StudyReading =
   | { readonly ok: true; readonly study: Study; readonly file: StudyFile }
@@ -36,10 +35,10 @@ export function readStudy(
     return { ok: false, issues: problems.issues }
   }
   const model = readModelOf(raw, shippedModels, problems)
-  checkShape(studySchema(model.own), raw, [], problems)
+  checkShape({ schema: study, raw, at: [], own: model.own, problems })
   const file = raw as StudyFile
-  const study = resolveStudy(file, model.resolved, model.checks, problems)
-  return study === undefined ? { ok: false, issues: problems.issues } : { ok: true, study, file }
+  const resolved = resolveStudy(file, model.resolved, model.checks, problems)
+  return resolved === undefined ? { ok: false, issues: problems.issues } : { ok: true, study: resolved, file }
 }
 
 interface ModelOfStudy {

@@ -4,24 +4,41 @@ import { nearestName } from '../nearestName'
 import { formatPath, type Step } from '../path'
 import type { Problems } from '../problems'
 import { type QuantityAsked, quantityProblem, unitProblem } from '../unitProblem'
+import { TAKING_OWN_COVARIATES } from './patientSchema'
 
 // A strict content security policy forbids the code that zod would otherwise compile.
 z.config({ jitless: true })
 
+/** Names of the covariates that the model declares; `any` where no model is at hand, and every unknown key passes for one. */
+export type OwnCovariates = readonly string[] | 'any'
+
+export interface ShapeCheck {
+  readonly schema: z.ZodType
+  readonly raw: unknown
+  /** Where the value stands in its file. */
+  readonly at: readonly Step[]
+  readonly own: OwnCovariates
+  readonly problems: Problems
+}
+
 /**
- * Compare a value with its schema and list every difference, each at its path below `at`.
+ * Compare a value with its schema and list every difference, each at its path.
  * The value itself is used afterwards, not a copy: no schema changes what it reads.
  */
-export function checkShape(schema: z.ZodType, raw: unknown, at: readonly Step[], problems: Problems): void {
-  const result = schema.safeParse(raw, { reportInput: true, error: knownKeysOf })
+export function checkShape({ schema, raw, at, own, problems }: ShapeCheck): void {
+  const result = schema.safeParse(raw, { reportInput: true, error: (issue) => knownKeys(issue, own) })
   if (result.success) return
   for (const issue of result.error.issues) report(issue, at, problems)
 }
 
+const ANY = '*'
+
 /** The keys that an object may have, one a line, as the message of an unknown key; other messages are written below. */
-function knownKeysOf(issue: z.core.$ZodRawIssue): string | undefined {
+function knownKeys(issue: z.core.$ZodRawIssue, own: OwnCovariates): string | undefined {
   if (issue.code !== 'unrecognized_keys') return undefined
-  return issue.inst instanceof z.ZodObject ? Object.keys(issue.inst.shape).join('\n') : ''
+  const keys = issue.inst instanceof z.ZodObject ? Object.keys(issue.inst.shape) : []
+  if (!TAKING_OWN_COVARIATES.includes(issue.inst)) return keys.join('\n')
+  return own === 'any' ? ANY : [...keys, ...own].join('\n')
 }
 
 function report(issue: z.core.$ZodIssue, at: readonly Step[], problems: Problems): void {
@@ -32,6 +49,7 @@ function report(issue: z.core.$ZodIssue, at: readonly Step[], problems: Problems
   } else if (issue.code === 'unrecognized_keys') {
     const known = issue.message.split('\n')
     for (const key of issue.keys) {
+      if (issue.message === ANY || known.includes(key)) continue
       const message = `unknown key "${key}"; the nearest known key is "${nearestName(key, known)}"`
       problems.add(formatPath([...steps, key]), message)
     }
