@@ -5,8 +5,17 @@ import { areaState, effectSiteState, eliminatedState } from './fluxLayout'
 import { volumeOf } from './linearRates'
 import { observedVolume } from './model'
 
-/** The absolute tolerance of an amount, in units of relative tolerance x the largest amount met so far. */
-const FLOOR = 1e-3
+/** How closely a course is integrated. */
+export interface IntegrationTolerance {
+  /** Of every amount and area, a step; what is achieved may be ten to twenty times that. Above 1e-4 counts as 1e-4. */
+  readonly relative: number
+}
+
+/**
+ * The absolute tolerance of an amount, in units of relative tolerance x the largest amount so far. A thousandth is
+ * usual; a millionth costs a twentieth more steps and leaves a trough at a millionth of the peak its digits.
+ */
+const FLOOR = 1e-6
 
 /** The largest amounts met so far on one course: of drug in the body, and of targets. */
 export interface LargestAmounts {
@@ -16,12 +25,14 @@ export interface LargestAmounts {
 
 /**
  * Absolute tolerances that go with the amounts there are, so that no unit of mass is better than another: for drug and for
- * targets a thousandth of the relative tolerance times the largest amount so far, what enters during the step included;
+ * targets a millionth of the relative tolerance times the largest amount so far, what enters during the step included;
  * for concentrations that over the volume; for an area what that concentration amounts to over the step.
  */
 export class FluxTolerance implements RosenbrockTolerance {
   readonly relative: number
   readonly #flux: Flux
+  /** Absolute tolerance per amount of the largest. */
+  readonly #part: number
   readonly #largest: LargestAmounts
   readonly #isDrug: readonly boolean[]
   /** For each state behind the amounts, 1 / volume, and whether it is an area. */
@@ -29,8 +40,9 @@ export class FluxTolerance implements RosenbrockTolerance {
   readonly #isArea: readonly boolean[]
 
   /** `largest` is shared by all models of one course. */
-  constructor(relative: number, flux: Flux, largest: LargestAmounts) {
-    this.relative = relative
+  constructor(tolerance: IntegrationTolerance, flux: Flux, largest: LargestAmounts) {
+    this.relative = tolerance.relative
+    this.#part = tolerance.relative * FLOOR
     this.#flux = flux
     this.#largest = largest
     this.#isDrug = flux.model.compartments.map(({ holds }) => holds === 'drug')
@@ -51,8 +63,8 @@ export class FluxTolerance implements RosenbrockTolerance {
     const largest = this.#largest
     if (drug > largest.drug) largest.drug = drug
     if (target > largest.target) largest.target = target
-    const ofDrug = FLOOR * this.relative * largest.drug
-    const ofTarget = FLOOR * this.relative * largest.target
+    const ofDrug = this.#part * largest.drug
+    const ofTarget = this.#part * largest.target
     for (let i = 0; i < coupled; i++) out[i] = isDrug[i] ? ofDrug : ofTarget
     const perVolume = this.#perVolume
     const isArea = this.#isArea

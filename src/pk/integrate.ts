@@ -4,18 +4,12 @@ import { RosenbrockFailure } from '../numerics/rosenbrockFailure'
 import type { RosenbrockCounts } from '../numerics/rosenbrockSystem'
 import type { ReadonlyVector } from '../numerics/vector'
 import { Flux } from './flux'
-import { FluxTolerance, type LargestAmounts } from './fluxTolerance'
+import { FluxTolerance, type IntegrationTolerance, type LargestAmounts } from './fluxTolerance'
 import { IntegratedPiece } from './integratedPiece'
 import type { Model } from './model'
 import type { Segment } from './segment'
 import type { BodyState } from './state'
 import type { Trajectory } from './trajectory'
-
-/** How closely a course is integrated. */
-export interface IntegrationTolerance {
-  /** Of every amount and area, a step; what is achieved may be ten to twenty times that. Above 1e-4 counts as 1e-4. */
-  readonly relative: number
-}
 
 /** What results are computed with where nothing else is said. */
 export const WORKING_TOLERANCE: IntegrationTolerance = { relative: 1e-8 }
@@ -25,9 +19,8 @@ export const INTEGRATION_WITNESS: IntegrationTolerance = { relative: 1e-11 }
 
 /**
  * The course of any model over gapless segments, from a state before the first one's boluses, by the Rosenbrock method
- * (METHODS 2): each segment on its own, so that every dose, infusion end, change and session is met exactly. Amounts below
- * a thousandth of the tolerance, relative to the largest amount there has been, are not resolved. Mass balance is kept to
- * rounding, whatever the tolerance.
+ * (METHODS 2): each segment on its own, so that every dose, infusion end, change and session is met exactly. Mass balance is
+ * kept to rounding, whatever the tolerance.
  *
  * Throws `RangeError` for no segments, `RosenbrockFailure` with time (since the start), step and state where a segment
  * cannot be integrated.
@@ -137,7 +130,7 @@ export class Integrator {
     const known = this.#ready.get(model)
     if (known !== undefined) return known
     const flux = new Flux(model)
-    const tolerance = new FluxTolerance(this.#tolerance.relative, flux, this.#largest)
+    const tolerance = new FluxTolerance(this.#tolerance, flux, this.#largest)
     const nonnegative = new Array<boolean>(flux.size).fill(true)
     const ready: Ready = {
       flux,
