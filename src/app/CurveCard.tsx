@@ -1,36 +1,55 @@
-import { createMemo, createSignal, For } from 'solid-js'
+import { createEffect, createMemo, createSignal, For, on, Show } from 'solid-js'
 import { curvesFigure } from '../report/figureCurves'
 import type { ChartView } from '../report/page/chart'
 import { FigureView } from './FigureView'
+import { createFigureWidth } from './figureWidth'
 import { RegimenTag } from './RegimenTag'
-import { createWidth } from './width'
 
 /** The curve of every regimen over the window, with the dose lines under it. */
 export function CurveCard(props: { chart: ChartView }) {
   const [axis, setAxis] = createSignal<'linear' | 'log'>('linear')
-  let frame!: HTMLDivElement
-  const width = createWidth(() => frame, 800)
-  const figure = createMemo(() => curvesFigure(props.chart, { width: width(), axis: axis() }))
-  const choice = (kind: 'linear' | 'log', name: string) => (
-    <button type="button" aria-pressed={axis() === kind} onClick={() => setAxis(kind)}>
-      {name}
-    </button>
+  const [chosen, setChosen] = createSignal(0)
+  createEffect(
+    on(
+      () => props.chart.firstSite,
+      (first) => setChosen(first)
+    )
   )
+  const site = () => props.chart.sites[chosen()] ?? props.chart.sites[0]!
+  let frame!: HTMLDivElement
+  const width = createFigureWidth(() => frame, 800)
+  const figure = createMemo(() => curvesFigure(props.chart, site(), { width: width(), axis: axis() }))
   return (
     <section class="curve-card card" aria-labelledby="curve-title">
       <div class="row">
-        <h2 id="curve-title">{props.chart.title}</h2>
+        <h2 id="curve-title">{site().title}</h2>
+        <Show when={props.chart.sites.length > 1}>
+          <fieldset class="choice">
+            <legend class="unseen">Where</legend>
+            <For each={props.chart.sites}>
+              {(each, k) => (
+                <button type="button" aria-pressed={chosen() === k()} onClick={() => setChosen(k())}>
+                  {each.name}
+                </button>
+              )}
+            </For>
+          </fieldset>
+        </Show>
         <fieldset class="choice">
           <legend class="unseen">Level axis</legend>
-          {choice('linear', 'Linear')}
-          {choice('log', 'Log')}
+          <button type="button" aria-pressed={axis() === 'linear'} onClick={() => setAxis('linear')}>
+            Linear
+          </button>
+          <button type="button" aria-pressed={axis() === 'log'} onClick={() => setAxis('log')}>
+            Log
+          </button>
         </fieldset>
       </div>
       <div ref={frame}>
         <FigureView figure={figure()} />
       </div>
       <ul class="key">
-        <For each={props.chart.curves}>
+        <For each={site().curves}>
           {(curve) => (
             <li>
               <RegimenTag label={curve.regimen} /> {curve.regimen.name}

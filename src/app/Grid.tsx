@@ -17,50 +17,60 @@ export function Grid(props: { grid: GridView }) {
 function GridTable(props: { grid: GridView; titled: boolean }) {
   return (
     <section class="scroll" tabindex="0" aria-label={props.grid.title}>
-      <table>
-        <caption>
-          <Show when={props.titled}>
-            <b>{props.grid.title}</b>{' '}
-          </Show>
-          <span class="quiet">{props.grid.explanation}</span>
-        </caption>
-        <thead>
-          <tr>
-            <td />
-            <For each={props.grid.columns}>
-              {(column) => (
-                <th scope="col">
-                  <Show when={column.regimen} fallback={column.title}>
-                    {(label) => <RegimenTag label={label()} />}
-                  </Show>
-                </th>
+      <Show
+        when={props.grid.rows.length > 0}
+        fallback={
+          <p>
+            <b>{props.titled ? props.grid.title : ''}</b>
+          </p>
+        }
+      >
+        <table>
+          <caption>
+            <Show when={props.titled}>
+              <b>{props.grid.title}</b>{' '}
+            </Show>
+            <span class="quiet">{props.grid.explanation}</span>
+          </caption>
+          <thead>
+            <tr>
+              <td />
+              <For each={props.grid.columns}>
+                {(column) => (
+                  <th scope="col">
+                    <Show when={column.regimen} fallback={column.title}>
+                      {(label) => <RegimenTag label={label()} />}
+                    </Show>
+                  </th>
+                )}
+              </For>
+            </tr>
+          </thead>
+          <tbody>
+            <For each={props.grid.rows}>
+              {(row) => (
+                <tr>
+                  <th scope="row">{row.head}</th>
+                  <For each={row.cells}>
+                    {(cell) => (
+                      <td>
+                        {cell.text}
+                        <Show when={cell.mark}>
+                          <sup>{cell.mark}</sup>
+                        </Show>
+                        <Show when={cell.met !== undefined}>
+                          <span class={cell.met ? 'met' : 'unmet'}>{cell.met ? ' met' : ' not met'}</span>
+                        </Show>
+                      </td>
+                    )}
+                  </For>
+                </tr>
               )}
             </For>
-          </tr>
-        </thead>
-        <tbody>
-          <For each={props.grid.rows}>
-            {(row) => (
-              <tr>
-                <th scope="row">{row.head}</th>
-                <For each={row.cells}>
-                  {(cell) => (
-                    <td title={cell.why}>
-                      {cell.text}
-                      <Show when={cell.met !== undefined}>
-                        <span class={cell.met ? 'met' : 'unmet'}>{cell.met ? ' met' : ' not met'}</span>
-                      </Show>
-                      <Show when={cell.why}>
-                        <span class="unseen"> {cell.why}</span>
-                      </Show>
-                    </td>
-                  )}
-                </For>
-              </tr>
-            )}
-          </For>
-        </tbody>
-      </table>
+          </tbody>
+        </table>
+      </Show>
+      <For each={props.grid.notes}>{(note) => <p class="footnote">{note}</p>}</For>
     </section>
   )
 }

@@ -24,8 +24,8 @@ export function IssueList(props: { refusal: Refusal; kept: string | undefined })
       <Show when={props.kept}>
         {(title) => (
           <p class="quiet">
-            Below, in grey, stands the last study that could be computed: <b>{title()}</b>. It is not the file that you
-            opened.
+            What stands below, in grey, is not of this file but of the last study that could be computed:{' '}
+            <b>{title()}</b>
           </p>
         )}
       </Show>

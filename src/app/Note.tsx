@@ -9,7 +9,7 @@ export function Note(props: { page: PageView }) {
   return (
     <article class="note" aria-label="Note">
       <section class="finding" aria-labelledby="found">
-        <h2 id="found">Found</h2>
+        <h2 id="found">Findings</h2>
         <For each={note().findings}>
           {(sentence) => (
             <p>

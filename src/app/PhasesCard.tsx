@@ -3,10 +3,10 @@ import { phasesFigure } from '../report/figurePhases'
 import type { PhaseCurves, PhasesBlock, PhasesView } from '../report/page/page'
 import { DownloadButton } from './DownloadButton'
 import { FigureView } from './FigureView'
+import { createFigureWidth } from './figureWidth'
 import { Grid } from './Grid'
 import type { StudyDesk } from './studyDesk'
 import { Words } from './Words'
-import { createWidth } from './width'
 
 /** The phases of the model, when distribution is over and when steady state is near. */
 export function PhasesCard(props: { desk: StudyDesk; phases: PhasesView }) {
@@ -43,7 +43,7 @@ function Block(props: { block: PhasesBlock }) {
 
 function PhaseFigure(props: { curves: PhaseCurves }) {
   let frame!: HTMLDivElement
-  const width = createWidth(() => frame, 520)
+  const width = createFigureWidth(() => frame, 520)
   const figure = createMemo(() => phasesFigure(props.curves, width()))
   return (
     <div ref={frame}>

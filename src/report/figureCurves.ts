@@ -2,7 +2,7 @@ import { type Box, type Figure, pixel, type Shape } from './figure'
 import { type Axis, linearAxis, logarithmicAxis } from './figureAxis'
 import { doseLines, LANE } from './figureDoses'
 import { timeMarks } from './figureTime'
-import type { ChartView, CurveView } from './page/chart'
+import type { ChartView, CurveView, SiteView } from './page/chart'
 
 /** Room that a log axis gives below the window and the curves, as a share of the highest level. */
 const LOG_DEPTH = 1e-5
@@ -16,12 +16,13 @@ export interface FigureSize {
  * The concentration of every regimen over the window, with the patient's changes, and below it a dose line a regimen
  * on the same time axis. Drawn for a width, so that type and lines keep their size on any screen.
  */
-export function curvesFigure(chart: ChartView, size: FigureSize): Figure {
+export function curvesFigure(chart: ChartView, site: SiteView, size: FigureSize): Figure {
   const narrow = size.width < 560
-  const rows = labelRows(chart, size.width)
+  const moments = markedMoments(chart, size.width)
+  const rows = Math.max(0, ...moments.map((moment) => moment.row + 1))
   const plot: Box = {
     x: narrow ? 38 : 52,
-    y: 10 + 17 * rows.count,
+    y: 10 + 17 * rows,
     width: size.width - (narrow ? 38 : 52) - 30,
     height: narrow ? 236 : Math.min(560, Math.max(300, Math.round(size.width * 0.44)))
   }
@@ -29,44 +30,38 @@ export function curvesFigure(chart: ChartView, size: FigureSize): Figure {
   const lanesTop = bottom + 34
   const height = lanesTop + chart.lanes.length * LANE + 4
   const x = (time: number) => plot.x + (plot.width * time) / chart.until
-  const y = levelAxis(chart, size.axis, plot)
+  const y = levelAxis(site, size.axis, plot)
   const shapes: Shape[] = [
-    ...windowBand(chart, y, plot, size.axis),
+    ...windowBand(site, y, plot, size.axis),
     ...levelGrid(y, plot),
     ...timeGrid(chart, x, plot, height),
     ...sessionBands(chart, x, plot, height),
-    ...changeLines(chart, x, plot, height, rows),
+    ...changeLines(moments, x, plot, height),
     {
       kind: 'clipped',
       box: { ...plot, y: plot.y - 2, height: plot.height + 2 },
-      shapes: chart.curves.map((curve) => ({
+      shapes: site.curves.map((curve) => ({
         kind: 'path',
         look: `curve s${curve.regimen.style}`,
         d: pathOf(curve, x, y)
       }))
     },
-    ...windowLabel(chart, y, plot, narrow),
-    ...curveEnds(chart, y, plot),
+    ...windowLabel(site, y, plot, narrow),
+    ...curveEnds(site, y, plot),
     ...doseLines(chart, x, plot, lanesTop)
   ]
-  return { width: size.width, height, label: chart.label, shapes }
+  return { width: size.width, height, label: site.label, shapes }
 }
 
-/** The plot's own place in the figure, for what follows the pointer over it. */
-export function timeAt(chart: ChartView, width: number, x: number): number {
-  const left = width < 560 ? 38 : 52
-  return Math.min(chart.until, Math.max(0, ((x - left) / (width - left - 30)) * chart.until))
-}
-
-function levelAxis(chart: ChartView, kind: 'linear' | 'log', plot: Box): Axis {
-  let top = chart.window === undefined ? 0 : chart.window.high * 1.1
-  for (const curve of chart.curves) for (const level of curve.values) top = Math.max(top, level)
+function levelAxis(site: SiteView, kind: 'linear' | 'log', plot: Box): Axis {
+  let top = site.window === undefined ? 0 : site.window.high * 1.1
+  for (const curve of site.curves) for (const level of curve.values) top = Math.max(top, level)
   if (top === 0) top = 1
   const bottom = plot.y + plot.height
   if (kind === 'linear') return linearAxis(top, bottom, plot.y, Math.max(3, Math.round(plot.height / 70)))
   let low = top
-  if (chart.window !== undefined && chart.window.low > 0) low = Math.min(low, chart.window.low * 0.5)
-  for (const curve of chart.curves) low = Math.min(low, lowestAfterFirstPeak(curve))
+  if (site.window !== undefined && site.window.low > 0) low = Math.min(low, site.window.low * 0.5)
+  for (const curve of site.curves) low = Math.min(low, lowestAfterFirstPeak(curve))
   return logarithmicAxis(Math.max(low, top * LOG_DEPTH), top, bottom, plot.y)
 }
 
@@ -95,12 +90,12 @@ function pathOf(curve: CurveView, x: (time: number) => number, y: Axis): string 
   return d
 }
 
-function windowBand(chart: ChartView, y: Axis, plot: Box, axis: 'linear' | 'log'): Shape[] {
-  if (chart.window === undefined) return []
+function windowBand(site: SiteView, y: Axis, plot: Box, axis: 'linear' | 'log'): Shape[] {
+  if (site.window === undefined) return []
   const bottom = plot.y + plot.height
-  const top = clamp(y.place(chart.window.high), plot.y, bottom)
-  const reachable = axis === 'linear' || chart.window.low > 0
-  const low = reachable ? clamp(y.place(chart.window.low), plot.y, bottom) : bottom
+  const top = clamp(y.place(site.window.high), plot.y, bottom)
+  const reachable = axis === 'linear' || site.window.low > 0
+  const low = reachable ? clamp(y.place(site.window.low), plot.y, bottom) : bottom
   return [
     { kind: 'rect', x: plot.x, y: top, width: plot.width, height: low - top, round: 0, look: 'window' },
     line(plot.x, top, plot.x + plot.width, top, 'window-edge'),
@@ -108,10 +103,10 @@ function windowBand(chart: ChartView, y: Axis, plot: Box, axis: 'linear' | 'log'
   ]
 }
 
-function windowLabel(chart: ChartView, y: Axis, plot: Box, narrow: boolean): Shape[] {
-  if (chart.window === undefined) return []
-  const at = clamp(y.place(chart.window.high), plot.y, plot.y + plot.height) - 6
-  const text = narrow ? chart.window.label.replace(/^window /, '') : chart.window.label
+function windowLabel(site: SiteView, y: Axis, plot: Box, narrow: boolean): Shape[] {
+  if (site.window === undefined) return []
+  const at = clamp(y.place(site.window.high), plot.y, plot.y + plot.height) - 6
+  const text = narrow ? site.window.label.replace(/^window /, '') : site.window.label
   return [{ kind: 'text', x: plot.x + 6, y: Math.max(at, plot.y + 12), anchor: 'start', text, look: 'label halo' }]
 }
 
@@ -165,43 +160,39 @@ function sessionBands(chart: ChartView, x: (time: number) => number, plot: Box, 
   )
 }
 
-interface LabelRows {
-  readonly row: readonly number[]
-  readonly count: number
+interface Moment {
+  readonly at: number
+  readonly label: string
+  /** From 0, upwards. */
+  readonly row: number
 }
 
-/** Labels of changes stand above the plot; those that would meet take a row further up. About 6.4 px a letter. */
-function labelRows(chart: ChartView, width: number): LabelRows {
-  const ends: number[] = []
-  const row = markedMoments(chart).map((moment) => {
-    const start = (moment.at / chart.until) * (width - 80)
-    const length = 6.4 * moment.label.length + 12
-    const begin = Math.min(start, Math.max(0, width - 80 - length))
-    let free = ends.findIndex((end) => end <= begin)
-    if (free < 0) free = ends.push(0) - 1
-    ends[free] = begin + length
-    return free
-  })
-  return { row, count: ends.length }
-}
-
-function markedMoments(chart: ChartView): { at: number; label: string }[] {
+/**
+ * What is marked on the time axis, ascending, each label in a row above the plot. A label lies above the lines of all
+ * later moments that it reaches over, so that no line runs through it. About 6.4 px a letter.
+ */
+function markedMoments(chart: ChartView, width: number): readonly Moment[] {
   const now = chart.now === undefined ? [] : [{ at: chart.now, label: 'now' }]
   const first = chart.sessions[0]
   const sessions = first === undefined ? [] : [{ at: first.from, label: 'dialysis' }]
-  return [...chart.changes, ...sessions, ...now].sort((a, b) => a.at - b.at)
+  const moments: Moment[] = []
+  const labels = new Map<number, string>()
+  for (const { at, label } of [...now, ...chart.changes, ...sessions]) {
+    const before = labels.get(at)
+    labels.set(at, before === undefined ? label : `${before}, ${label}`)
+  }
+  for (const [at, label] of [...labels].sort(([a], [b]) => b - a)) {
+    const end = at + ((6.4 * label.length + 14) / (width - 80)) * chart.until
+    const reached = moments.filter((later) => later.at < end).map((later) => later.row + 1)
+    moments.push({ at, label, row: Math.max(0, ...reached) })
+  }
+  return moments.reverse()
 }
 
-function changeLines(
-  chart: ChartView,
-  x: (time: number) => number,
-  plot: Box,
-  height: number,
-  rows: LabelRows
-): Shape[] {
-  return markedMoments(chart).flatMap((moment, k): Shape[] => {
+function changeLines(moments: readonly Moment[], x: (time: number) => number, plot: Box, height: number): Shape[] {
+  return moments.flatMap((moment): Shape[] => {
     const at = x(moment.at)
-    const baseline = plot.y - 5 - 17 * rows.row[k]!
+    const baseline = plot.y - 5 - 17 * moment.row
     const leftward = at + 6.4 * moment.label.length > plot.x + plot.width + 24
     return [
       line(at, baseline - 9, at, height - 4, 'moment'),
@@ -218,10 +209,10 @@ function changeLines(
 }
 
 /** The letter at the end of each curve; letters that would meet are set apart and led to their curve. */
-function curveEnds(chart: ChartView, y: Axis, plot: Box): Shape[] {
+function curveEnds(site: SiteView, y: Axis, plot: Box): Shape[] {
   const GAP = 15
   const bottom = plot.y + plot.height
-  const ends = chart.curves
+  const ends = site.curves
     .map((curve) => {
       const last = curve.values[curve.values.length - 1] ?? 0
       const at = last > y.floor ? clamp(y.place(last), plot.y, bottom) : bottom

@@ -34,7 +34,7 @@ function dayMarks(axis: { hoursPerUnit: number; width: number }, days: number): 
 
 function weekMarks(axis: { hoursPerUnit: number; width: number }, days: number): TimeMarks {
   const weeks = days / 7
-  const every = Math.max(1, Math.ceil((weeks * 50) / axis.width))
+  const every = Math.max(1, Math.ceil((weeks * 66) / axis.width))
   const unitsAWeek = (7 * HOURS_A_DAY) / axis.hoursPerUnit
   const lines: number[] = []
   const words: Tick[] = []
@@ -51,5 +51,6 @@ function roundMarks(axis: { until: number; unit: string; hoursPerUnit: number; w
   const step = steps.find((candidate) => candidate >= least) ?? least
   const count = Math.floor(axis.until / step + 1e-9)
   const lines = Array.from({ length: count + 1 }, (_, k) => k * step)
-  return { lines, words: lines.map((at) => ({ at, label: `${at} ${axis.unit}` })) }
+  // The unit stands once, at the last mark.
+  return { lines, words: lines.map((at, k) => ({ at, label: k === count ? `${at} ${axis.unit}` : `${at}` })) }
 }

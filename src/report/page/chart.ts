@@ -1,21 +1,30 @@
 import type { RegimenLabel } from './page'
 
-/** The curves of every regimen and what stands on the same time axis; times in `timeUnit`, levels in `unit`. */
+/** The curves of every regimen and what stands on the same time axis; times in `timeUnit`. */
 export interface ChartView {
-  /** What is drawn: `Concentration of PW-101 in plasma`. */
-  readonly title: string
-  readonly unit: string
   readonly timeUnit: string
   /** Hours in one `timeUnit`, to set days on the axis. */
   readonly hoursPerUnit: number
   readonly until: number
-  readonly curves: readonly CurveView[]
-  readonly window?: { readonly low: number; readonly high: number; readonly label: string }
+  /** Where concentrations are followed: the observed one first, then effect sites and further observations. */
+  readonly sites: readonly SiteView[]
+  /** The site to show at first: that of the first window. */
+  readonly firstSite: number
   /** Where the patient changes. */
   readonly changes: readonly { readonly at: number; readonly label: string }[]
   readonly now?: number
   readonly sessions: readonly { readonly from: number; readonly to: number; readonly label: string }[]
   readonly lanes: readonly DoseLane[]
+}
+
+/** The concentration at one site, of every regimen. */
+export interface SiteView {
+  /** `plasma`, `brain`. */
+  readonly name: string
+  /** What is drawn, with its unit: `Concentration of PW-101 in plasma, mg/L`. */
+  readonly title: string
+  readonly curves: readonly CurveView[]
+  readonly window?: { readonly low: number; readonly high: number; readonly label: string }
   /** The figure in words, for who does not see it. */
   readonly label: string
 }

@@ -1,8 +1,8 @@
 import type { Administration } from '../../pk/dose'
+import type { Signal } from '../../pk/trajectory'
 import type { StudyResult } from '../../study/result'
-import { fromCanonical } from '../../units/quantity'
 import { sampledSeries } from '../series'
-import type { ChartView, CurveView, DoseMark } from './chart'
+import type { ChartView, CurveView, DoseMark, SiteView } from './chart'
 import { shownUnit, significant, typed } from './number'
 import type { RegimenLabel } from './page'
 import { changeLabel } from './patientNote'
@@ -15,25 +15,15 @@ const POINTS = 400
 /** The curves of a study and what stands on their time axis, in the units of the screen. */
 export function chartOf(result: StudyResult, labels: readonly RegimenLabel[], showing: Showing): ChartView {
   const { study } = result
-  const curves = result.regimens.map((regimen, k): CurveView => {
-    const series = sampledSeries(regimen.course.trajectory, { kind: 'observed' }, POINTS)
-    return {
-      regimen: labels[k]!,
-      times: series.times.map(showing.time),
-      values: series.values.map(showing.concentration)
-    }
-  })
-  const window = windowOf(result, showing)
-  const { name, matrix } = study.drugModel.drug
-  const what = `${showing.unbound}concentration of ${name} in ${matrix}`
+  const sites = sitesOf(result)
+  const firstWindow = study.targets.find(({ kind }) => kind === 'window')?.signal
+  const first = sites.findIndex(({ signal }) => firstWindow !== undefined && sameSignal(signal, firstWindow))
   return {
-    title: `${capital(what)}, ${shownUnit(showing.concentrationUnit)}`,
-    unit: shownUnit(showing.concentrationUnit),
     timeUnit: showing.timeUnit,
-    hoursPerUnit: 1 / fromCanonical('time', 1, showing.timeUnit).value,
+    hoursPerUnit: 1 / showing.time(1),
     until: showing.time(study.sampling.until),
-    curves,
-    ...(window === undefined ? {} : { window }),
+    sites: sites.map((site) => siteView(site, result, labels, showing)),
+    firstSite: Math.max(0, first),
     changes: study.people.slice(1).map(({ from, person }, k) => ({
       at: showing.time(from),
       label: changeLabel(study.people[k]!.person, person, study.drugModel)
@@ -44,14 +34,63 @@ export function chartOf(result: StudyResult, labels: readonly RegimenLabel[], sh
       to: showing.time(start + duration),
       label: `dialysis from ${showing.typedTime(start)} over ${showing.typedTime(duration)}`
     })),
-    lanes: lanesOf(result, labels, showing),
-    label: labelOf(result, labels, showing, what, window)
+    lanes: lanesOf(result, labels, showing)
   }
 }
 
-/** The first window on the observed concentration. */
-function windowOf(result: StudyResult, showing: Showing): ChartView['window'] {
-  const target = result.study.targets.find(({ kind, signal }) => kind === 'window' && signal.kind === 'observed')
+interface Site {
+  readonly name: string
+  readonly signal: Signal
+}
+
+function sitesOf(result: StudyResult): readonly Site[] {
+  const [stretch] = result.stretches
+  if (stretch === undefined) throw new RangeError('a result has a stretch from time 0 on')
+  const { effectSites, observations } = stretch.individual.subject.model
+  return [
+    { name: result.study.drugModel.drug.matrix, signal: { kind: 'observed' } },
+    ...effectSites.map(({ name }, index): Site => ({ name, signal: { kind: 'effect-site', index } })),
+    ...observations.map(({ name }, index): Site => ({ name, signal: { kind: 'observation', index } }))
+  ]
+}
+
+function sameSignal(a: Signal, b: Signal): boolean {
+  if (a.kind === 'observed' || b.kind === 'observed') return a.kind === b.kind
+  return a.kind === b.kind && a.index === b.index
+}
+
+function siteView(site: Site, result: StudyResult, labels: readonly RegimenLabel[], showing: Showing): SiteView {
+  const curves = result.regimens.map((regimen, k): CurveView => {
+    const series = sampledSeries(regimen.course.trajectory, site.signal, POINTS)
+    return {
+      regimen: labels[k]!,
+      times: series.times.map(showing.time),
+      values: series.values.map(showing.concentration)
+    }
+  })
+  const unit = shownUnit(showing.concentrationUnit)
+  const where = site.signal.kind === 'effect-site' ? `at the effect site ${site.name}` : `in ${site.name}`
+  const what = `${showing.unbound}concentration of ${result.study.drugModel.drug.name} ${where}`
+  const window = windowOf(site, result, showing)
+  const peaks = curves.map(
+    ({ regimen, values }) =>
+      `${regimen.letter}, ${regimen.name}, reaches ${significant(values.reduce((a, b) => Math.max(a, b), 0))}`
+  )
+  const count = curves.length === 1 ? 'one regimen' : `${curves.length} regimens`
+  const until = showing.typedTime(result.study.sampling.until)
+  const band = window === undefined ? '' : `; ${window.label} shaded`
+  return {
+    name: site.name,
+    title: `${capital(what)}, ${unit}`,
+    curves,
+    ...(window === undefined ? {} : { window }),
+    label: `${capital(what)} over ${until} for ${count}: ${listed(peaks)} ${unit} at most${band}. The tables below hold the numbers.`
+  }
+}
+
+/** The first window on the site's concentration. */
+function windowOf(site: Site, result: StudyResult, showing: Showing): SiteView['window'] {
+  const target = result.study.targets.find(({ kind, signal }) => kind === 'window' && sameSignal(signal, site.signal))
   if (target === undefined) return undefined
   const limits = totalLimits(target)
   const low = showing.concentration(limits.low)
@@ -97,23 +136,6 @@ function doseLabel(given: Administration, showing: Showing): string {
   const over = given.duration > 0 ? ` over ${showing.typedTime(given.duration)}` : ''
   const departure = given.departure === undefined ? '' : ` (${polished(given.departure)})`
   return `${showing.typedAmount(given.productAmount)}${over} ${given.route} at ${showing.typedTime(given.at)}${departure}`
-}
-
-/** The figure in words: what, how long, between which levels each curve runs, and the window. */
-function labelOf(
-  result: StudyResult,
-  labels: readonly RegimenLabel[],
-  showing: Showing,
-  what: string,
-  window: ChartView['window']
-): string {
-  const each = result.regimens.map(({ exposure }, k) => {
-    const peak = Math.max(0, ...exposure.intervals.map((interval) => interval.peak))
-    return `${labels[k]!.letter}, ${labels[k]!.name}, peaks at ${significant(showing.concentration(peak))}`
-  })
-  const count = result.regimens.length === 1 ? 'one regimen' : `${result.regimens.length} regimens`
-  const band = window === undefined ? '' : `; ${window.label} shaded`
-  return `${capital(what)} over ${showing.typedTime(result.study.sampling.until)} for ${count}: ${listed(each)} ${shownUnit(showing.concentrationUnit)}${band}. The exposure and concentration tables hold the numbers.`
 }
 
 function capital(text: string): string {

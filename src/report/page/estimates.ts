@@ -25,13 +25,13 @@ export function estimatesView(result: StudyResult, showing: Showing): EstimatesV
     const stretches = overviews.map((each) => parts.flatMap((part) => each[part]))
     const labels = [...new Set(stretches.flatMap((rows) => rows.map((row) => row.label)))]
     const rows: EstimateRow[] = []
-    const missing: string[] = []
+    const missing: Missing[] = []
     for (const label of labels) {
       const found = stretches.map((all) => all.find((row) => row.label === label))
       const [reason] = found.flatMap((row) => (row?.estimate.kind === 'not computed' ? [row.estimate.reason] : []))
       const used = [...new Set(found.flatMap((row) => row?.usedBy ?? []))]
       if (found.every((row) => row?.estimate.kind !== 'computed') && used.length === 0) {
-        missing.push(`${polished(label)} (${reason ?? 'not known'})`)
+        missing.push({ label: polished(label), reason: reason ?? 'not known' })
         continue
       }
       rows.push({
@@ -51,10 +51,10 @@ export function estimatesView(result: StudyResult, showing: Showing): EstimatesV
           ...row,
           values: row.values.map((cell) => (cell.computed ? { ...cell, text: cell.text.split('\u00a0')[0]! } : cell))
         })),
-        missing: notComputed(missing)
+        missing: notComputed(missing, rows.length === 0)
       }
     }
-    return { title, rows, missing: notComputed(missing) }
+    return { title, rows, missing: notComputed(missing, rows.length === 0) }
   })
   return { columns, groups: groups.filter((group) => group.rows.length > 0 || group.missing !== '') }
 }
@@ -73,6 +73,15 @@ function commonUnit(rows: readonly EstimateRow[]): string | undefined {
   return units.size === 1 && unit !== '' ? unit : undefined
 }
 
-function notComputed(missing: readonly string[]): string {
-  return missing.length === 0 ? '' : `Not computed: ${missing.join('; ')}.`
+interface Missing {
+  readonly label: string
+  readonly reason: string
+}
+
+/** What could not be computed, by reason; a whole group that lacks one thing is not listed name by name. */
+function notComputed(missing: readonly Missing[], whole: boolean): string {
+  const reasons = new Map<string, string[]>()
+  for (const { label, reason } of missing) reasons.set(reason, [...(reasons.get(reason) ?? []), label])
+  if (whole && reasons.size === 1) return `Not computed: ${[...reasons.keys()].join('')}.`
+  return [...reasons].map(([reason, labels]) => `Not computed (${reason}): ${labels.join('; ')}.`).join(' ')
 }

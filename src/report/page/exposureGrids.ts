@@ -1,7 +1,7 @@
 import type { RegimenResult, StudyResult } from '../../study/result'
-import { cell, cellOf, regimenColumns } from './grid'
+import { type Entry, entry, entryOf, type GridPlan, grid, regimenColumns } from './grid'
 import { percent, shownUnit, significant, typed } from './number'
-import type { GridRow, GridView, RegimenLabel } from './page'
+import type { GridView, RegimenLabel } from './page'
 import type { Showing } from './showing'
 import { targetHead, targetNumber } from './targetWords'
 
@@ -26,16 +26,16 @@ export function exposureGrids(
 function targetsGrid(result: StudyResult, labels: readonly RegimenLabel[], showing: Showing): GridView[] {
   const { study } = result
   if (study.targets.length === 0) return []
-  const rows = study.targets.map((target, index): GridRow => {
-    const cells = result.regimens.map(({ exposure }) => {
+  const rows = study.targets.map((target, index): GridPlan['rows'][number] => {
+    const entries = result.regimens.map(({ exposure }): Entry => {
       const judged = exposure.targets[index]
-      if (judged?.met === undefined) return { text: '–', why: judged?.why ?? 'not evaluable' }
-      return { text: targetNumber(judged, study, showing), met: judged.met }
+      if (judged?.met === undefined) return { shown: undefined, why: judged?.why ?? 'not evaluable' }
+      return { shown: targetNumber(judged, study, showing), met: judged.met }
     })
-    return { head: targetHead(target, study, showing), cells }
+    return { head: targetHead(target, study, showing), entries }
   })
   const explanation = 'the worst value over the stretches that a target names'
-  return [{ title: 'Targets', explanation, columns: regimenColumns(labels), rows, folded: false }]
+  return [grid({ title: 'Targets', explanation, columns: regimenColumns(labels), rows, folded: false })]
 }
 
 function steadyStateGrid(result: StudyResult, labels: readonly RegimenLabel[], showing: Showing): GridView {
@@ -52,14 +52,14 @@ function steadyStateGrid(result: StudyResult, labels: readonly RegimenLabel[], s
     | 'reached90'
     | 'period'
   const states = result.regimens.map((regimen) => regimen.exposure.steadyState)
-  const row = (head: string, name: Name, show: (value: number) => string): GridRow => ({
+  const row = (head: string, name: Name, show: (value: number) => string): GridPlan['rows'][number] => ({
     head,
-    cells: states.map((state) => cellOf(state, name, show))
+    entries: states.map((state) => entryOf(state, name, show))
   })
   const level = (value: number) => significant(showing.concentration(value))
   const time = (value: number) => significant(showing.time(value))
   const concentration = shownUnit(showing.concentrationUnit)
-  return {
+  return grid({
     title: 'At steady state',
     explanation: 'of what repeats at the end, if nothing changed any more',
     columns: regimenColumns(labels),
@@ -78,7 +78,7 @@ function steadyStateGrid(result: StudyResult, labels: readonly RegimenLabel[], s
       row(`period, ${showing.timeUnit}`, 'period', (value) => typed(showing.time(value))),
       row(`90\u00a0% of it reached after, ${showing.timeUnit}`, 'reached90', time)
     ]
-  }
+  })
 }
 
 function studyGrid(result: StudyResult, labels: readonly RegimenLabel[], showing: Showing): GridView {
@@ -86,23 +86,27 @@ function studyGrid(result: StudyResult, labels: readonly RegimenLabel[], showing
   const time = (value: number) => significant(showing.time(value))
   const area = (value: number) => significant(showing.area(value))
   type Name = 'timeInWindow' | 'timeAbove' | 'timeBelow' | 'timeToReach' | 'timeToLeave' | 'aucLast24' | 'aucNext24'
-  const row = (head: string, name: Name, show: (value: number) => string): GridRow => ({
+  const row = (head: string, name: Name, show: (value: number) => string): GridPlan['rows'][number] => ({
     head,
-    cells: exposures.map((exposure) => cellOf(exposure, name, show))
+    entries: exposures.map((exposure) => entryOf(exposure, name, show))
   })
   const areaUnit = shownUnit(showing.areaUnit)
   const peaks = exposures.map(({ intervals }) => Math.max(...intervals.map((interval) => interval.peak)))
-  const rows: GridRow[] = [
+  const rows: GridPlan['rows'][number][] = [
     {
       head: `highest ${showing.unbound}peak, ${shownUnit(showing.concentrationUnit)}`,
-      cells: peaks.map((peak) =>
-        cell(Number.isFinite(peak) ? peak : undefined, (x) => significant(showing.concentration(x)), 'no dose is given')
+      entries: peaks.map((peak) =>
+        entry(
+          Number.isFinite(peak) ? peak : undefined,
+          (x) => significant(showing.concentration(x)),
+          'no dose is given'
+        )
       )
     },
     {
       head: `highest running ${showing.unbound}AUC24, ${areaUnit}`,
-      cells: exposures.map(({ highestRunningAuc24, why }) =>
-        cell(highestRunningAuc24?.auc, area, why.highestRunningAuc24)
+      entries: exposures.map(({ highestRunningAuc24, why }) =>
+        entry(highestRunningAuc24?.auc, area, why.highestRunningAuc24)
       )
     }
   ]
@@ -121,36 +125,37 @@ function studyGrid(result: StudyResult, labels: readonly RegimenLabel[], showing
       row(`${showing.unbound}AUC of the next 24 h, ${areaUnit}`, 'aucNext24', area)
     )
   }
-  return {
+  return grid({
     title: 'Over the study',
     explanation: 'as written, from the first dose to the end',
     columns: regimenColumns(labels),
     rows,
     folded: false
-  }
+  })
 }
 
 function dayGrids(result: StudyResult, labels: readonly RegimenLabel[], showing: Showing): GridView[] {
   const [first] = result.regimens
   const days = first?.exposure.days ?? []
   if (days.length === 0) return []
-  const grid = (title: string, name: 'auc' | 'timeInWindow', show: (value: number) => string): GridView => ({
-    title,
-    explanation: 'day n runs from 24 (n - 1) to 24 n h',
-    columns: regimenColumns(labels),
-    folded: true,
-    rows: days.map(({ day }, k) => ({
-      head: `day ${day}`,
-      cells: result.regimens.map(({ exposure }) => {
-        const found = exposure.days[k]
-        return found === undefined ? { text: '–', why: 'no such day' } : cellOf(found, name, show)
-      })
-    }))
-  })
-  const area = grid(`${capital(showing.unbound)}AUC by day, ${shownUnit(showing.areaUnit)}`, 'auc', (value) =>
+  const byDay = (title: string, name: 'auc' | 'timeInWindow', show: (value: number) => string) =>
+    grid({
+      title,
+      explanation: 'day n runs from 24 (n - 1) to 24 n h',
+      columns: regimenColumns(labels),
+      folded: true,
+      rows: days.map(({ day }, k) => ({
+        head: `day ${day}`,
+        entries: result.regimens.map(({ exposure }) => {
+          const found = exposure.days[k]
+          return found === undefined ? entry(undefined, show, 'no such day') : entryOf(found, name, show)
+        })
+      }))
+    })
+  const area = byDay(`${capital(showing.unbound)}AUC by day, ${shownUnit(showing.areaUnit)}`, 'auc', (value) =>
     significant(showing.area(value))
   )
-  return windowed(result) ? [area, grid('Time in window by day', 'timeInWindow', percent)] : [area]
+  return windowed(result) ? [area, byDay('Time in window by day', 'timeInWindow', percent)] : [area]
 }
 
 function intervalsGrid(regimen: RegimenResult, label: RegimenLabel, showing: Showing): GridView {
@@ -160,7 +165,7 @@ function intervalsGrid(regimen: RegimenResult, label: RegimenLabel, showing: Sho
   const level = (value: number) => significant(showing.concentration(value))
   const time = (value: number) => significant(showing.time(value), 4)
   const more = intervals.length - shown.length
-  return {
+  return grid({
     title: `Intervals of ${label.letter}`,
     explanation: `${label.name}, from each dose to the next one given${more > 0 ? `; ${more} more are in the CSV file` : ''}`,
     columns: [
@@ -174,16 +179,16 @@ function intervalsGrid(regimen: RegimenResult, label: RegimenLabel, showing: Sho
     folded: true,
     rows: shown.map((interval) => ({
       head: `${typed(showing.time(interval.start))} to ${typed(showing.time(interval.end))}\u00a0${showing.timeUnit}${interval.incomplete ? ', incomplete' : ''}`,
-      cells: [
-        cellOf(interval, 'peak', level),
-        cellOf(interval, 'peakTime', time),
-        cellOf(interval, 'trough', level),
-        cellOf(interval, 'minimum', level),
-        cellOf(interval, 'average', level),
-        cellOf(interval, 'auc', (value) => significant(showing.area(value)))
+      entries: [
+        entryOf(interval, 'peak', level),
+        entryOf(interval, 'peakTime', time),
+        entryOf(interval, 'trough', level),
+        entryOf(interval, 'minimum', level),
+        entryOf(interval, 'average', level),
+        entryOf(interval, 'auc', (value) => significant(showing.area(value)))
       ]
     }))
-  }
+  })
 }
 
 function windowed(result: StudyResult): boolean {

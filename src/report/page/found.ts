@@ -94,18 +94,19 @@ function aboutDistribution(result: StudyResult, showing: Showing): Prose[] {
       ' after the end of a dose may still show distribution, and is not compared with a window.'
     ])
   }
-  for (const reason of reasons(without)) sentences.push([sentence(reason)])
+  for (const reason of reasons(without, all.length)) sentences.push([sentence(reason)])
   return sentences
 }
 
-function reasons(without: readonly DistributionOver[]): string[] {
+/** A model that describes no distribution says so once; else how many intervals end before distribution is over. */
+function reasons(without: readonly DistributionOver[], all: number): string[] {
   const counts = new Map<string, number>()
   for (const { why } of without) if (why !== undefined) counts.set(why, (counts.get(why) ?? 0) + 1)
-  return [...counts].map(([why, count]) =>
-    why.startsWith('this model')
-      ? why
-      : `in ${count === 1 ? 'one interval' : `${count} intervals`}: distribution ${why}`
-  )
+  return [...counts].map(([why, count]) => {
+    if (!why.startsWith('never')) return why
+    const which = count === all ? 'every interval' : count === 1 ? 'one interval' : `${count} of ${all} intervals`
+    return `in ${which} distribution is never over before the next dose or the end`
+  })
 }
 
 function aboutSteadyState(result: StudyResult, labels: readonly RegimenLabel[], showing: Showing): Prose[] {

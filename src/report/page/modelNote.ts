@@ -54,7 +54,7 @@ function equations(result: StudyResult, first: IndividualStretch): readonly Pros
 /** `CL = 0.35 + 3.9 x (CLcr / 100 mL/min)^0.75` with its symbol set apart and its power raised. */
 export function formula(line: string): Prose {
   const [left = '', right = ''] = splitOnce(line, ' = ')
-  const pieces = polished(right.replaceAll(' x ', ' × ').replaceAll(' - ', ' − ')).split(/\^(-?[\d.]+)/)
+  const pieces = polished(right.replaceAll(' x ', ' × ').replace(/(?<=[ (])-(?=[ \d])/g, '−')).split(/\^(-?[\d.]+)/)
   return [
     symbol(left),
     ' = ',

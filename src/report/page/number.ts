@@ -21,6 +21,11 @@ export function typed(x: number): string {
   return grouped(plainDecimal(Number(x.toPrecision(12))))
 }
 
+/** A time of a table: seven figures tell any two rows apart, and 10 s is 0.1666667 min. */
+export function timeFigures(x: number): string {
+  return grouped(plainDecimal(Number(x.toPrecision(7))))
+}
+
 /** A number as it was typed where three figures hold it, else to three significant figures. */
 export function brief(x: number): string {
   return Number(x.toPrecision(3)) === x ? typed(x) : significant(x)

@@ -86,6 +86,8 @@ export interface GridView {
   readonly explanation: string
   readonly columns: readonly GridColumn[]
   readonly rows: readonly GridRow[]
+  /** Why a value is not defined, by the mark in its cell, then what is not defined anywhere; small type below. */
+  readonly notes: readonly string[]
   /** Folded away until asked for. */
   readonly folded: boolean
 }
@@ -104,8 +106,8 @@ export interface GridRow {
 export interface GridCell {
   /** A number, or a dash where it is not defined. */
   readonly text: string
-  /** Why it is not defined. */
-  readonly why?: string
+  /** Of the note that says why it is not defined. */
+  readonly mark?: string
   /** Against a target. */
   readonly met?: boolean
 }

@@ -2,6 +2,8 @@ import { nameInWords, valueInWords } from '../../patient/covariateWords'
 import type { DrugModel } from '../../patient/drugModel'
 import type { CovariateName, Person } from '../../patient/person'
 import type { Study } from '../../study/study'
+import { multipleOf } from '../../units/spacing'
+import { brief, withUnit } from './number'
 import { type Prose, value } from './prose'
 import { listed, polished, type Showing } from './showing'
 
@@ -23,8 +25,10 @@ export function patientNote(study: Study, showing: Showing): readonly Prose[] {
   }
   if (study.sessions.length > 0) {
     const sessions = study.sessions.map((session) => {
-      const repeated = session.every === undefined ? '' : ', repeated'
-      return `${showing.typedTime(session.duration)} from ${showing.typedTime(session.at)}${repeated}`
+      const every = session.every === undefined ? '' : ` every ${showing.typedTime(multipleOf(session.every, 1))}`
+      const times = session.count === undefined ? '' : `, ${session.count} times`
+      const clearance = withUnit(brief(session.clearance), 'L/h')
+      return `${showing.typedTime(session.duration)} from ${showing.typedTime(session.at)} on${every}${times}, adding a clearance of ${clearance}`
     })
     sentences.push(['Dialysis: ', value(listed(sessions)), '.'])
   }

@@ -1,6 +1,6 @@
 import type { PhasesOfStretch } from '../../pk/phases'
 import type { StudyResult } from '../../study/result'
-import { cell, regimenColumns } from './grid'
+import { type Entry, entry, entryOf, grid, regimenColumns } from './grid'
 import { percent, significant, typed, withUnit } from './number'
 import type { GridView, PhaseCurves, PhasesBlock, PhasesView, RegimenLabel } from './page'
 import { type Prose, value } from './prose'
@@ -41,12 +41,15 @@ function phasesGrid(stretch: PhasesOfStretch, title: string, showing: Showing): 
   }))
   const extra = [...stretch.absorption, ...stretch.effectSites].map((rate) => ({
     head: `${rate.name}${rate.setsFinalSlope ? ', sets the final slope' : ''}`,
-    cells: [
-      { text: significant(showing.time(rate.halfLife)) },
-      ...Array.from({ length: 1 + shares.length }, () => ({ text: '–', why: 'not a phase of the disposition' }))
+    entries: [
+      { shown: significant(showing.time(rate.halfLife)) },
+      ...Array.from(
+        { length: 1 + shares.length },
+        (): Entry => ({ shown: undefined, why: 'not a phase of the disposition' })
+      )
     ]
   }))
-  return {
+  return grid({
     title,
     explanation: 'after a bolus into the observed compartment, sessions off',
     columns: [
@@ -58,15 +61,15 @@ function phasesGrid(stretch: PhasesOfStretch, title: string, showing: Showing): 
     rows: [
       ...stretch.phases.map((phase, k) => ({
         head: phaseName(stretch, k),
-        cells: [
-          { text: significant(showing.time(phase.halfLife)) },
-          { text: percent(phase.shareOfAuc) },
-          ...shares.map(({ shares }) => cell(shares[k], percent, 'not defined'))
+        entries: [
+          { shown: significant(showing.time(phase.halfLife)) },
+          { shown: percent(phase.shareOfAuc) },
+          ...shares.map(({ shares }) => entry(shares[k], percent, undefined))
         ]
       })),
       ...extra
     ]
-  }
+  })
 }
 
 function sentences(stretch: PhasesOfStretch, showing: Showing): Prose[] {
@@ -142,14 +145,14 @@ function roundHours(hours: number): number {
 
 function samplingGrid(result: StudyResult, labels: readonly RegimenLabel[], showing: Showing): GridView {
   const time = (hours: number) => significant(showing.time(hours))
-  const range = (k: number) => {
+  const range = (k: number): Entry => {
     const hours = result.regimens[k]!.distribution.flatMap(({ over }) => (over === undefined ? [] : [over]))
     const why = result.regimens[k]!.distribution.find((each) => each.why !== undefined)?.why
-    if (hours.length === 0) return cell(undefined, time, why ?? 'no dose is given')
+    if (hours.length === 0) return entry(undefined, time, why ?? 'no dose is given')
     const [least, most] = [time(Math.min(...hours)), time(Math.max(...hours))]
-    return { text: least === most ? least : `${least} to ${most}` }
+    return { shown: least === most ? least : `${least} to ${most}` }
   }
-  return {
+  return grid({
     title: 'When a level can be read',
     explanation:
       'to compare with a window: after distribution is over and not from the line that the drug runs in; to estimate the patient: any accurately timed level if the model has the phase',
@@ -158,20 +161,16 @@ function samplingGrid(result: StudyResult, labels: readonly RegimenLabel[], show
     rows: [
       {
         head: `distribution is over, ${showing.timeUnit} after the end of a dose`,
-        cells: labels.map((_, k) => range(k))
+        entries: labels.map((_, k) => range(k))
       },
       {
         head: `90\u00a0% of steady state after, ${showing.timeUnit}`,
-        cells: result.regimens.map(({ exposure: { steadyState } }) =>
-          cell(steadyState.reached90, time, steadyState.why.reached90)
-        )
+        entries: result.regimens.map(({ exposure }) => entryOf(exposure.steadyState, 'reached90', time))
       },
       {
         head: `the same by troughs, ${showing.timeUnit}`,
-        cells: result.regimens.map(({ exposure: { steadyState } }) =>
-          cell(steadyState.reached90ByTrough, time, steadyState.why.reached90ByTrough)
-        )
+        entries: result.regimens.map(({ exposure }) => entryOf(exposure.steadyState, 'reached90ByTrough', time))
       }
     ]
-  }
+  })
 }

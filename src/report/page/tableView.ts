@@ -3,7 +3,7 @@ import { profileColumns, profileRows } from '../../pk/profile'
 import { rowTimes } from '../../pk/profileTimes'
 import { sameTime } from '../../pk/times'
 import type { RegimenResult, StudyResult } from '../../study/result'
-import { shownUnit, significant, typed } from './number'
+import { shownUnit, significant, timeFigures } from './number'
 import type { RegimenLabel, TableView } from './page'
 import { type Showing, showingOf } from './showing'
 
@@ -51,7 +51,7 @@ export class TableRows {
   }
 
   #shown(row: ProfileRow): string[] {
-    const cells = [typed(this.#showing.time(row.time)), row.row as string]
+    const cells = [timeFigures(this.#showing.time(row.time)), row.row as string]
     this.#columns.forEach((column, k) => {
       cells.push(significant(columnValue(column, row.values[k]!, this.#showing)))
     })

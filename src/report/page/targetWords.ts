@@ -36,6 +36,7 @@ export function outcomePhrase(result: TargetResult, study: Study, showing: Showi
   const worst = value(targetValue(result, study, showing))
   const when = ON_ALL.includes(target.when.kind) ? '' : ` ${whenInWords(target.when)}`
   const unbound = isUnbound(target, study) ? 'unbound ' : ''
+  const of = signalName(target, study)
   if (isShare(target)) {
     const where =
       target.kind === 'window'
@@ -43,13 +44,16 @@ export function outcomePhrase(result: TargetResult, study: Study, showing: Showi
         : target.kind === 'time-above'
           ? `above ${limit(target, target.low, study, showing)}`
           : `below ${limit(target, target.high, study, showing)}`
-    return { said: [`${unbound}${where} `, worst, ` of the time${when}`], asked: `at least ${percent(target.share)}` }
+    return {
+      said: [`${unbound}${where}${of === '' ? '' : `${of},`} `, worst, ` of the time${when}`],
+      asked: `at least ${percent(target.share)}`
+    }
   }
   const { begin } = parts(target, study, showing)
   const name = begin.startsWith('AUC') ? begin : begin.toLowerCase()
   const which =
     when !== '' ? '' : target.low === undefined ? 'highest ' : target.high === undefined ? 'lowest ' : 'worst '
-  return { said: [`${which}${unbound}${name} `, worst, when], asked: limitsInWords(target, study, showing) }
+  return { said: [`${which}${unbound}${name}${of} `, worst, when], asked: limitsInWords(target, study, showing) }
 }
 
 /** Stretches of which the worst is reported. */
