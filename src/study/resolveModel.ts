@@ -18,6 +18,8 @@ export interface ResolvedModel {
   readonly convert: Converter
   /** What each parameter is, by its use. */
   readonly kindOfParameter: (name: string) => Kind | undefined
+  /** Whether all of the file has its shape, so that a name that is not in it is nowhere. */
+  readonly isSound: boolean
 }
 
 /** Computed covariates that a model uses only after it has said by which equation. */
@@ -74,7 +76,13 @@ export function resolveModel(file: ModelFile, path: string, problems: Problems):
     ...parts
   }
   const units = new Map(parameters.map(({ name, unit }) => [name, unit]))
-  return { drugModel, covariates, convert, kindOfParameter: (name) => kindOf(name, units.get(name) ?? '', uses) }
+  return {
+    drugModel,
+    covariates,
+    convert,
+    isSound: problems.isSound(path),
+    kindOfParameter: (name) => kindOf(name, units.get(name) ?? '', uses)
+  }
 }
 
 /** The covariates that the model's numbers depend on: those of its factors and of its validity. */

@@ -16,15 +16,16 @@ import { open } from './soundMembers'
 import type { Sampling, Study, StudyRegimen } from './study'
 
 /**
- * A study file, its shape already compared, in canonical units. `model` is absent where it could not be read; whatever
- * does not depend on it is checked all the same. Undefined where anything is wrong.
+ * A study file, its shape already compared, in canonical units. Whatever does not depend on the model is checked even
+ * where the model could not be read. Undefined where anything is wrong.
  */
 export function resolveStudy(
   file: StudyFile,
-  model: ResolvedModel | undefined,
+  modelRead: ResolvedModel | undefined,
   modelChecks: readonly ModelCheck[],
   problems: Problems
 ): Study | undefined {
+  const model = modelRead?.isSound === true ? modelRead : undefined
   const convert =
     model === undefined ? new LenientConverter(problems) : new Converter(problems, model.convert.molarMass)
   const sound = <K extends keyof StudyFile & string>(key: K) => (problems.isSound(key) ? file[key] : undefined)

@@ -546,6 +546,12 @@ describe('all problems are listed at once', () => {
     expect(issuesOf(broken).map(({ path }) => path)).toEqual(['model', `${dose}.amount`])
   })
 
+  test('of a study whose model has a route of the wrong shape, without blaming the doses for it', () => {
+    expect(issuesOf(withModel('pw-101', 'routes[0].name', 7)).map(({ path }) => path)).toEqual(['model.routes[0].name'])
+    const unread = put(withModel('pw-101', 'drug.molarMass.unit', 'u'), 'mic', q(2, 'umol/L'))
+    expect(issuesOf(unread).map(({ path }) => path)).toEqual(['model.drug.molarMass'])
+  })
+
   test('each on one line, however the file is written', () => {
     const issues = issuesOf(put(study(), 'a\nb\u2028c', 'x'))
     expect(issues).toHaveLength(1)
@@ -578,6 +584,30 @@ describe('products', () => {
 
   test('are dosed by mass, since only the molar mass of the moiety is known', () => {
     expect(issuesOf(put(withProducts(), `${dose}.amount`, q(1, 'mmol')))[0]?.path).toBe(`${dose}.amount`)
+  })
+})
+
+describe("the model's own covariates", () => {
+  const withOwn = (path: string, value: unknown) => {
+    const content = put(put(study(), 'model', 'pw-107'), 'patient.metaboliser', 'slow')
+    return put(put(content, 'patient.alphaGlycoprotein', q(80, 'mg/dL')), path, value)
+  }
+
+  test('are taken in any unit of the same kind', () => {
+    expect(issuesOf(withOwn('patient.alphaGlycoprotein', q(0.8, 'g/L')))).toEqual([])
+    expect(issuesOf(withOwn('patient.changes[0].alphaGlycoprotein', q(0.9, 'g/L')))).toEqual([])
+  })
+
+  test.each([
+    ['patient.alphaGlycoprotein', 0.8, /alphaGlycoprotein needs a unit, for example { "value": 0.8, "unit": "g\/L" }/],
+    ['patient.alphaGlycoprotein', q(20, 'umol/L'), /"umol\/L" does not convert to "g\/L"/],
+    ['patient.metaboliser', 'slwo', /metaboliser must be one of its categories; the nearest is "slow"/],
+    ['patient.metaboliser', 1, /metaboliser must be one of its categories/],
+    ['patient.alphaGlycoprotien', q(1, 'g/L'), /the nearest known key is "alphaGlycoprotein"/]
+  ])('are checked against the model: %s', (path, value, message) => {
+    const issues = issuesOf(withOwn(path, value))
+    expect(issues.map((issue) => issue.path)).toEqual([path])
+    expect(issues[0]?.message).toMatch(message)
   })
 })
 
