@@ -8,23 +8,26 @@ export interface Kernel {
   readonly rows: (a: Float64Array, count: number, b: Float64Array, out: Float64Array) => void
   /** `count` columns C, one after another: out = B C. `out` must be neither. */
   readonly columns: (b: Float64Array, c: Float64Array, count: number, out: Float64Array) => void
+  /** The first `count` rows of `a`, in place: every column divided by its sum. */
+  readonly balance: (a: Float64Array, count: number) => void
 }
 
 /** The products for n x n matrices. */
 export function kernelFor(n: number): Kernel {
   switch (n) {
     case 2:
-      return { rows: rows2, columns: columns2 }
+      return { rows: rows2, columns: columns2, balance: balance2 }
     case 3:
-      return { rows: rows3, columns: columns3 }
+      return { rows: rows3, columns: columns3, balance: balance3 }
     case 4:
-      return { rows: rows4, columns: columns4 }
+      return { rows: rows4, columns: columns4, balance: balance4 }
     case 5:
-      return { rows: rows5, columns: columns5 }
+      return { rows: rows5, columns: columns5, balance: balance5 }
     default:
       return {
         rows: (a, count, b, out) => rowsAny(n, a, count, b, out),
-        columns: (b, c, count, out) => columnsAny(n, b, c, count, out)
+        columns: (b, c, count, out) => columnsAny(n, b, c, count, out),
+        balance: (a, count) => balanceAny(n, a, count)
       }
   }
 }
@@ -250,5 +253,98 @@ function columns5(b: Float64Array, c: Float64Array, count: number, out: Float64A
     out[p + 2] = b20 * c0 + b21 * c1 + b22 * c2 + b23 * c3 + b24 * c4
     out[p + 3] = b30 * c0 + b31 * c1 + b32 * c2 + b33 * c3 + b34 * c4
     out[p + 4] = b40 * c0 + b41 * c1 + b42 * c2 + b43 * c3 + b44 * c4
+  }
+}
+
+function balanceAny(n: number, a: Float64Array, count: number): void {
+  for (let j = 0; j < n; j++) {
+    let sum = 0
+    for (let p = j; p < n * count; p += n) sum += a[p]
+    const factor = 1 / sum
+    for (let p = j; p < n * count; p += n) a[p] *= factor
+  }
+}
+
+function balance2(a: Float64Array, count: number): void {
+  let s0 = 0
+  let s1 = 0
+  for (let p = 0; p < 2 * count; p += 2) {
+    s0 += a[p]
+    s1 += a[p + 1]
+  }
+  const f0 = 1 / s0
+  const f1 = 1 / s1
+  for (let p = 0; p < 2 * count; p += 2) {
+    a[p] *= f0
+    a[p + 1] *= f1
+  }
+}
+
+function balance3(a: Float64Array, count: number): void {
+  let s0 = 0
+  let s1 = 0
+  let s2 = 0
+  for (let p = 0; p < 3 * count; p += 3) {
+    s0 += a[p]
+    s1 += a[p + 1]
+    s2 += a[p + 2]
+  }
+  const f0 = 1 / s0
+  const f1 = 1 / s1
+  const f2 = 1 / s2
+  for (let p = 0; p < 3 * count; p += 3) {
+    a[p] *= f0
+    a[p + 1] *= f1
+    a[p + 2] *= f2
+  }
+}
+
+function balance4(a: Float64Array, count: number): void {
+  let s0 = 0
+  let s1 = 0
+  let s2 = 0
+  let s3 = 0
+  for (let p = 0; p < 4 * count; p += 4) {
+    s0 += a[p]
+    s1 += a[p + 1]
+    s2 += a[p + 2]
+    s3 += a[p + 3]
+  }
+  const f0 = 1 / s0
+  const f1 = 1 / s1
+  const f2 = 1 / s2
+  const f3 = 1 / s3
+  for (let p = 0; p < 4 * count; p += 4) {
+    a[p] *= f0
+    a[p + 1] *= f1
+    a[p + 2] *= f2
+    a[p + 3] *= f3
+  }
+}
+
+function balance5(a: Float64Array, count: number): void {
+  let s0 = 0
+  let s1 = 0
+  let s2 = 0
+  let s3 = 0
+  let s4 = 0
+  for (let p = 0; p < 5 * count; p += 5) {
+    s0 += a[p]
+    s1 += a[p + 1]
+    s2 += a[p + 2]
+    s3 += a[p + 3]
+    s4 += a[p + 4]
+  }
+  const f0 = 1 / s0
+  const f1 = 1 / s1
+  const f2 = 1 / s2
+  const f3 = 1 / s3
+  const f4 = 1 / s4
+  for (let p = 0; p < 5 * count; p += 5) {
+    a[p] *= f0
+    a[p + 1] *= f1
+    a[p + 2] *= f2
+    a[p + 3] *= f3
+    a[p + 4] *= f4
   }
 }

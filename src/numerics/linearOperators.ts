@@ -141,15 +141,7 @@ export class LinearOperators {
 
   /** Divide each column of X and its sink by their sum, which is known to be 1: this keeps doubling from doubling errors. */
   #balance(): void {
-    const { n } = this.#form
-    const block = this.#block
-    const end = (n + 1) * n
-    for (let j = 0; j < n; j++) {
-      let sum = 0
-      for (let p = j; p < end; p += n) sum += block[p]
-      const factor = 1 / sum
-      for (let p = j; p < end; p += n) block[p] *= factor
-    }
+    this.#kernel.balance(this.#block, this.#form.n + 1)
   }
 
   #copyInto(operator: Operator): void {

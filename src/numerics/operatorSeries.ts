@@ -3,8 +3,10 @@ import type { Kernel } from './kernels'
 import type { NonnegativeForm } from './nonnegativeForm'
 import { strideOf } from './taylorPlan'
 
-/** 1 / k! for k = 0 to 16. */
-const INVERSE_FACTORIAL = Float64Array.from({ length: 17 }, (_, k) => 1 / factorial(k))
+/** Coefficients of a row's polynomials, k = 0 to 16. */
+const TERMS = 17
+/** 1 / k!. */
+const INVERSE_FACTORIAL = Float64Array.from({ length: TERMS }, (_, k) => 1 / factorial(k))
 
 /** k!, exact for k up to 18. */
 function factorial(k: number): number {
@@ -12,25 +14,25 @@ function factorial(k: number): number {
 }
 
 /**
- * The operator over a short step by truncated series with nothing but nonnegative terms (METHODS 1.3). Owns its scratch;
- * `into` allocates nothing.
+ * The operator over a short step T by truncated series with nothing but nonnegative terms (METHODS 1.3): X, R, Phi and H
+ * are polynomials in N = (K + sigma I) T, all evaluated with the same few powers of N. Owns its scratch; `into`
+ * allocates nothing. Numbers that methods share stand in arrays: handed over, they would be allocated.
  */
 export class OperatorSeries {
   readonly #form: NonnegativeForm
   readonly #kernel: Kernel
-  /** N^k at index k, from 1 to 4, N = (K + sigma I) T; and the product of the polynomial so far. */
+  /** N^k at index k, from 1 to 4. */
   readonly #powers: readonly Float64Array[]
-  readonly #product: Float64Array
-  /** Terms of R, Phi and H, and room for the next. */
-  readonly #rowTerms: Float64Array
-  readonly #rowProducts: Float64Array
-  readonly #columnTerms: Float64Array
+  /** T r N^k of all rows at index k, from 0 to 3. */
+  readonly #lowRows: readonly Float64Array[]
+  /** X, then R, then the rows of H before they meet a column; and their product with N^stride. */
+  #stack: Float64Array
+  #nextStack: Float64Array
   readonly #columnProducts: Float64Array
-  readonly #directTerms: Float64Array
-  /** T r and mu of each row, mu^k / k!, nu and e^-nu. Numbers stand in arrays: handed to a method they would be allocated. */
-  readonly #sources: Float64Array
-  readonly #mus: Float64Array
-  readonly #rowPowers: Float64Array
+  /** Coefficients of R and H, a set for each row. Those of Phi are the set of the sink, whose decay is 0. */
+  readonly #rowCoefficients: Float64Array
+  readonly #directCoefficients: Float64Array
+  /** nu and e^-nu. */
   readonly #nu = new Float64Array(1)
   readonly #damping = new Float64Array(1)
 
@@ -39,15 +41,12 @@ export class OperatorSeries {
     this.#form = form
     this.#kernel = kernel
     this.#powers = Array.from({ length: 5 }, () => new Float64Array(n * n))
-    this.#product = new Float64Array(n * n)
-    this.#rowTerms = new Float64Array(f * n)
-    this.#rowProducts = new Float64Array(f * n)
-    this.#columnTerms = new Float64Array(m * n)
+    this.#lowRows = Array.from({ length: 4 }, () => new Float64Array(f * n))
+    this.#stack = new Float64Array((n + 2 * f) * n)
+    this.#nextStack = new Float64Array((n + 2 * f) * n)
     this.#columnProducts = new Float64Array(m * n)
-    this.#directTerms = new Float64Array(f * m)
-    this.#sources = new Float64Array(f * n)
-    this.#mus = new Float64Array(f)
-    this.#rowPowers = new Float64Array(f)
+    this.#rowCoefficients = new Float64Array(f * TERMS)
+    this.#directCoefficients = new Float64Array(f * TERMS)
   }
 
   /**
@@ -55,122 +54,123 @@ export class OperatorSeries {
    * into `columns`, H into `direct`.
    */
   into(step: number, degree: number, block: Float64Array, columns: Float64Array, direct: Float64Array): void {
-    const { n, m, inputs, shifted, weights, gaps, sigma } = this.#form
+    const { n, m, f, inputs, shifted, weights, gaps, sigma } = this.#form
     const first = this.#powers[1]
-    const sources = this.#sources
+    const sources = this.#lowRows[0]
     for (let p = 0; p < first.length; p++) first[p] = shifted[p] * step
     for (let p = 0; p < sources.length; p++) sources[p] = weights[p] * step
-    for (let r = 0; r < gaps.length; r++) this.#mus[r] = gaps[r] * step
     this.#nu[0] = sigma * step
-    columns.fill(0)
-    for (let c = 0; c < m; c++) columns[c * n + inputs[c]] = step
-    this.#sumPowers(degree, block)
-    this.#sumColumns(degree, columns, direct)
-    this.#sumRows(degree, block)
-    this.#damp(block, columns, direct)
-  }
+    for (let r = 0; r < f; r++) this.#setCoefficients(r, degree, gaps[r] * step)
+    this.#raisePowers(degree)
+    this.#sumStack(degree)
+    this.#sumColumns(degree, columns)
 
-  /** Everything times e^-nu. */
-  #damp(block: Float64Array, columns: Float64Array, direct: Float64Array): void {
     decaysInto(this.#nu, this.#damping)
     const damping = this.#damping[0]
-    for (let p = 0; p < block.length; p++) block[p] *= damping
-    for (let p = 0; p < columns.length; p++) columns[p] *= damping
-    for (let p = 0; p < direct.length; p++) direct[p] *= damping
-  }
-
-  /** X = sum_{k=0..m} N^k / k!, as a polynomial in N^stride with polynomials of lower degree as coefficients. */
-  #sumPowers(degree: number, block: Float64Array): void {
-    const { n } = this.#form
-    const { rows } = this.#kernel
-    const powers = this.#powers
-    const product = this.#product
-    const stride = strideOf(degree)
-    for (let k = 1; k < stride; k++) rows(powers[k], n, powers[1], powers[k + 1])
-    const highest = powers[stride]
-    for (let p = 0; p < n * n; p++) product[p] = INVERSE_FACTORIAL[degree] * highest[p]
-    for (let lowest = degree - stride; lowest >= 0; lowest -= stride) {
-      // `product` holds what stands above N^stride; add the powers from `lowest` on below it.
-      for (let i = 0; i < n; i++) product[i * n + i] += INVERSE_FACTORIAL[lowest]
-      for (let k = 1; k < stride; k++) {
-        const power = powers[k]
-        const coefficient = INVERSE_FACTORIAL[lowest + k]
-        for (let p = 0; p < n * n; p++) product[p] += coefficient * power[p]
-      }
-      if (lowest === 0) break
-      rows(product, n, highest, block)
-      for (let p = 0; p < n * n; p++) product[p] = block[p]
+    const stack = this.#stack
+    for (let p = 0; p < block.length; p++) block[p] = stack[p] * damping
+    for (let p = 0; p < columns.length; p++) columns[p] *= step * damping
+    for (let r = 0; r < f; r++) {
+      const row = (n + f + r) * n
+      for (let c = 0; c < m; c++) direct[r * m + c] = stack[row + inputs[c]] * step * damping
     }
-    for (let p = 0; p < n * n; p++) block[p] = product[p]
   }
 
   /**
-   * Phi = sum c_k / k!: c_1 = T e_j, which stands in `columns`, c_{k+1} = N c_k + nu^k T e_j; and with them
-   * H = sum h_k / k!: h_1 = 0, h_{k+1} = T r c_k + mu h_k. Each term comes divided by its factorial.
+   * Coefficients by synthetic division of sum x^k / k!, once at mu for R and once more for H:
+   * q_{j-1} = 1 / j! + mu q_j; g_{j-1} = p_j + mu g_j, p those of the sink, at nu.
    */
-  #sumColumns(degree: number, columns: Float64Array, direct: Float64Array): void {
-    const { n, m, f, inputs } = this.#form
-    if (m === 0) return
-    const first = this.#powers[1]
-    const terms = this.#columnTerms
-    const products = this.#columnProducts
-    const directTerms = this.#directTerms
-    const sources = this.#sources
-    const mus = this.#mus
-    const nu = this.#nu[0]
-    const step = columns[inputs[0]]
-    terms.set(columns)
-    directTerms.fill(0)
-    direct.fill(0)
-    let power = nu
-    for (let k = 1; k < degree; k++) {
-      const share = 1 / (k + 1)
-      for (let r = 0; r < f; r++) {
-        for (let c = 0; c < m; c++) {
-          let sum = 0
-          for (let j = 0; j < n; j++) sum += sources[r * n + j] * terms[c * n + j]
-          const p = r * m + c
-          const term = (sum + mus[r] * directTerms[p]) * share
-          directTerms[p] = term
-          direct[p] += term
-        }
-      }
-      this.#kernel.columns(first, terms, m, products)
-      for (let c = 0; c < m; c++) products[c * n + inputs[c]] += power * step
-      for (let p = 0; p < n * m; p++) {
-        const term = products[p] * share
-        terms[p] = term
-        columns[p] += term
-      }
-      power *= nu * share
+  #setCoefficients(r: number, degree: number, mu: number): void {
+    const q = this.#rowCoefficients
+    const g = this.#directCoefficients
+    const own = r * TERMS
+    q[own + degree] = 0
+    g[own + degree] = 0
+    g[own + degree - 1] = 0
+    for (let j = degree; j > 0; j--) q[own + j - 1] = INVERSE_FACTORIAL[j] + mu * q[own + j]
+    for (let j = degree - 1; j > 0; j--) g[own + j - 1] = q[j] + mu * g[own + j]
+  }
+
+  /** N^2 to N^stride, and T r N to T r N^(stride - 1). */
+  #raisePowers(degree: number): void {
+    const { n, f } = this.#form
+    const { rows } = this.#kernel
+    const powers = this.#powers
+    const lowRows = this.#lowRows
+    const stride = strideOf(degree)
+    for (let k = 1; k < stride; k++) {
+      rows(powers[k], n, powers[1], powers[k + 1])
+      rows(lowRows[k - 1], f, powers[1], lowRows[k])
     }
   }
 
-  /** R = sum w_k / k!: w_1 = T r, w_{k+1} = w_k N + mu^k T r, below X in `block`. Each term comes divided by its factorial. */
-  #sumRows(degree: number, block: Float64Array): void {
+  /**
+   * X = sum N^k / k!, R = T r sum q_k N^k, rows of H = T r sum g_k N^k, together: polynomials in N^stride by Horner's
+   * rule, whose coefficients are polynomials of lower degree [Paterson & Stockmeyer 1973].
+   */
+  #sumStack(degree: number): void {
     const { n, f } = this.#form
-    const first = this.#powers[1]
-    const terms = this.#rowTerms
-    const products = this.#rowProducts
-    const sources = this.#sources
-    const powers = this.#rowPowers
-    const mus = this.#mus
-    const below = n * n
-    terms.set(sources)
-    powers.set(mus)
-    for (let p = 0; p < f * n; p++) block[below + p] = terms[p]
-    for (let k = 1; k < degree; k++) {
-      const share = 1 / (k + 1)
-      this.#kernel.rows(terms, f, first, products)
-      for (let r = 0; r < f; r++) {
-        const power = powers[r]
-        for (let p = r * n; p < (r + 1) * n; p++) {
-          const term = (products[p] + power * sources[p]) * share
-          terms[p] = term
-          block[below + p] += term
-        }
-        powers[r] = power * mus[r] * share
+    const stride = strideOf(degree)
+    const highest = this.#powers[stride]
+    this.#stack.fill(0)
+    for (let p = 0; p < n * n; p++) this.#stack[p] = INVERSE_FACTORIAL[degree] * highest[p]
+    for (let lowest = degree - stride; lowest >= 0; lowest -= stride) {
+      if (lowest < degree - stride) {
+        this.#kernel.rows(this.#stack, n + 2 * f, highest, this.#nextStack)
+        const product = this.#nextStack
+        this.#nextStack = this.#stack
+        this.#stack = product
       }
+      this.#addLowPowers(lowest, stride)
+    }
+  }
+
+  /** Add the terms with N^lowest to N^(lowest + stride - 1), divided by N^lowest, to everything in the stack. */
+  #addLowPowers(lowest: number, stride: number): void {
+    const { n, f } = this.#form
+    const stack = this.#stack
+    const q = this.#rowCoefficients
+    const g = this.#directCoefficients
+    for (let i = 0; i < n; i++) stack[i * n + i] += INVERSE_FACTORIAL[lowest]
+    for (let k = 1; k < stride; k++) {
+      const power = this.#powers[k]
+      const coefficient = INVERSE_FACTORIAL[lowest + k]
+      for (let p = 0; p < n * n; p++) stack[p] += coefficient * power[p]
+    }
+    for (let k = 0; k < stride; k++) {
+      const low = this.#lowRows[k]
+      for (let r = 0; r < f; r++) {
+        const ofRow = q[r * TERMS + lowest + k]
+        const ofDirect = g[r * TERMS + lowest + k]
+        const row = (n + r) * n
+        const direct = (n + f + r) * n
+        for (let j = 0; j < n; j++) {
+          stack[row + j] += ofRow * low[r * n + j]
+          stack[direct + j] += ofDirect * low[r * n + j]
+        }
+      }
+    }
+  }
+
+  /** Phi = T sum p_k N^k e_c, but for the factor T: the low powers stand in columns of N^k. */
+  #sumColumns(degree: number, columns: Float64Array): void {
+    const { n, m, inputs } = this.#form
+    if (m === 0) return
+    const stride = strideOf(degree)
+    const products = this.#columnProducts
+    const p = this.#rowCoefficients
+    products.fill(0)
+    for (let lowest = degree - stride; lowest >= 0; lowest -= stride) {
+      if (lowest < degree - stride) this.#kernel.columns(this.#powers[stride], columns, m, products)
+      for (let c = 0; c < m; c++) {
+        const input = inputs[c]
+        products[c * n + input] += p[lowest]
+        for (let k = 1; k < stride; k++) {
+          const power = this.#powers[k]
+          for (let i = 0; i < n; i++) products[c * n + i] += p[lowest + k] * power[i * n + input]
+        }
+      }
+      columns.set(products)
     }
   }
 }
