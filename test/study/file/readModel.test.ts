@@ -417,7 +417,7 @@ describe('a model file read', () => {
     expect(drugModel.parameters.find(({ name }) => name === 'CL')?.toCanonical).toEqual({ times: 3, per: 50 })
   })
 
-  test('takes parameters in moles by the molar mass of the drug', () => {
+  test('takes amounts in moles by the molar mass of the drug', () => {
     const { drugModel } = read(
       put(model('pw-101'), 'drug.limits', [{ of: 'single', value: q(2, 'mmol'), source: 'x' }])
     )
