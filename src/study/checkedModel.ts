@@ -27,7 +27,7 @@ export interface CheckedValue {
 /** Run a model's own checks, each with the patient and the doses that it states. */
 export function checkModel(drugModel: DrugModel, checks: readonly ModelCheck[]): readonly CheckedValue[] {
   return checks.map((check) => {
-    const got = valueOf(drugModel, check)
+    const got = computedValue(drugModel, check)
     const shown = {
       what: check.parameter === undefined ? check.what : `${check.what} ${check.parameter}`,
       expected: fromCanonical(check.kind, check.expected, check.unit, drugModel.drug.molarMass).value,
@@ -59,7 +59,7 @@ export function failureInWords(checked: CheckedValue): string {
 }
 
 /** The value in canonical units, or why there is none. */
-function valueOf(drugModel: DrugModel, check: ModelCheck): number | string {
+function computedValue(drugModel: DrugModel, check: ModelCheck): number | string {
   const outcome = individual(drugModel, check.person, `${check.path}.patient`)
   if (!outcome.ok) return outcome.issues.map(({ path, message }) => `${path}: ${message}`).join('; ')
   const { subject, parameters } = outcome.individual

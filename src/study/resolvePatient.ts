@@ -1,5 +1,6 @@
 import type { Person } from '../patient/person'
 import type { SessionLine } from '../pk/prescription'
+import type { Quantity } from '../units/quantity'
 import { type Converter, present } from './converter'
 import type { ChangeFile, PatientFile } from './file/patientSchema'
 import { COMPUTED } from './knownCovariates'
@@ -25,7 +26,7 @@ export function resolvePatient(
   const context: PersonContext = { covariates: model.covariates, choices: model.drugModel.covariates, problems }
   const { changes, sessions: sessionsFile, ...person } = file
   const first = resolvePerson(person, path, NOBODY, context)
-  const people: PersonStretch[] = [{ from: 0, person: first, path }]
+  const people: PersonStretch[] = [{ from: 0, person: first, path, typed: quantitiesOf(person) }]
   const dated = [...open(changes, below(path, 'changes'), problems)].map(([at, change]) => ({
     at,
     change,
@@ -40,7 +41,7 @@ export function resolvePatient(
     checkGivenDirectly(change, at, given, context)
     const { at: _, ...values } = change
     const before: Person = people.at(-1)?.person ?? first
-    const changed = { from, person: resolvePerson(values, at, before, context), path: at }
+    const changed = { from, person: resolvePerson(values, at, before, context), path: at, typed: quantitiesOf(values) }
     // A change at 0 is in force from the start: there is no stretch before it.
     if (from === 0) people[0] = changed
     else people.push(changed)
@@ -59,6 +60,13 @@ export function resolvePatient(
   })
   if (sessions.length > 0) checkSessions(people, path, model, convert)
   return { people, sessions }
+}
+
+/** Those members that are a number with a unit. */
+function quantitiesOf(values: object): Record<string, Quantity> {
+  const isQuantity = (value: unknown): value is Quantity =>
+    typeof value === 'object' && value !== null && 'value' in value && 'unit' in value
+  return Object.fromEntries(Object.entries(values).filter((entry): entry is [string, Quantity] => isQuantity(entry[1])))
 }
 
 /** A covariate given directly would silently keep its value while what it is computed from changes. */

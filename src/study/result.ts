@@ -1,6 +1,7 @@
 import type { Finding } from '../patient/findings'
 import type { Individual } from '../patient/individual'
 import type { Person } from '../patient/person'
+import type { Question } from '../patient/plausibility'
 import type { Course } from '../pk/course'
 import type { DistributionOver } from '../pk/distribution'
 import type { DoseOverLimit } from '../pk/doseLimits'
@@ -19,6 +20,8 @@ export interface StudyResult {
   readonly phases: readonly PhasesOfStretch[]
   /** Per covariate: inside, outside, not known; unstable creatinine and the like. */
   readonly findings: readonly Finding[]
+  /** What is asked back because it is implausible; nothing is blocked by it. */
+  readonly questions: readonly Question[]
   /** What must be read before a number is used, in words; the standing caution is not among them. */
   readonly cautions: readonly string[]
 }

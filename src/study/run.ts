@@ -1,5 +1,6 @@
 import { weightFindings } from '../patient/findings'
 import { findingsOverTime } from '../patient/overTime'
+import { type Question, questionParameters, questionPerson } from '../patient/plausibility'
 import { type CourseRequest, courseOf } from '../pk/course'
 import { distributionOver } from '../pk/distribution'
 import { dosesOverLimits } from '../pk/doseLimits'
@@ -78,6 +79,7 @@ export function runStudy(study: Study): StudyOutcome {
     ...findingsOverTime(study.drugModel, study.people, study.sampling.until),
     ...study.people.flatMap(({ person }) => weightFindings(weightWords(study), person, study.drugModel))
   ]
+  const questions = questionsOf(study, stretches)
   return {
     ok: true,
     result: {
@@ -86,9 +88,28 @@ export function runStudy(study: Study): StudyOutcome {
       regimens,
       phases: stretchPhases(study, stretches, regimens),
       findings,
-      cautions: studyCautions(study, findings, cautions)
+      questions,
+      cautions: studyCautions(study, findings, [...questions.map(({ text }) => text), ...cautions])
     }
   }
+}
+
+/** What is implausible about the patient as typed, and about the parameters that come out. */
+function questionsOf(study: Study, stretches: readonly IndividualStretch[]): readonly Question[] {
+  const { drugModel, people } = study
+  const asked = [
+    ...people.flatMap(({ person, typed, path }) =>
+      // A value that goes on unchanged was asked about where it was typed.
+      questionPerson(person, typed, path).filter((question) => Object.hasOwn(typed, lastKey(question.path)))
+    ),
+    ...stretches.flatMap(({ person, individual }) => questionParameters(drugModel, person, individual))
+  ]
+  // A parameter that no change touches is asked about once.
+  return [...new Map(asked.map((question) => [question.text, question])).values()]
+}
+
+function lastKey(path: string): string {
+  return path.slice(path.lastIndexOf('.') + 1)
 }
 
 /** The words by which doses name a weight. */

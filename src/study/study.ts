@@ -3,6 +3,7 @@ import type { Person } from '../patient/person'
 import type { Prescription, SessionLine } from '../pk/prescription'
 import type { Target } from '../pk/target'
 import type { Hours, MilligramsPerLitre } from '../units/canonical'
+import type { Quantity } from '../units/quantity'
 import type { Spacing } from '../units/spacing'
 import type { ModelCheck } from './modelCheck'
 
@@ -12,6 +13,8 @@ export interface PersonStretch {
   readonly person: Person
   /** Where the values of this stretch stand in the file: `patient` or `patient.changes[0]`. */
   readonly path: string
+  /** Its quantities as they were typed, for questions in the unit typed. */
+  readonly typed: Readonly<Record<string, Quantity>>
 }
 
 /** A study, checked and canonical: everything that one run needs. */
