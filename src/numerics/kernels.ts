@@ -8,6 +8,8 @@ export interface Kernel {
   readonly rows: (a: Float64Array, count: number, b: Float64Array, out: Float64Array) => void
   /** `count` columns C, one after another: out = B C. `out` must be neither. */
   readonly columns: (b: Float64Array, c: Float64Array, count: number, out: Float64Array) => void
+  /** Steps of x <- B x: `states` holds x in its first n places and receives `count` successors behind it. */
+  readonly march: (b: Float64Array, states: Float64Array, count: number) => void
   /** The first `count` rows of `a`, in place: every column divided by its sum. */
   readonly balance: (a: Float64Array, count: number) => void
 }
@@ -16,27 +18,47 @@ export interface Kernel {
 export function kernelFor(n: number): Kernel {
   switch (n) {
     case 2:
-      return { rows: rows2, columns: columns2, balance: balance2 }
+      return { rows: rows2, columns: columns2, march: march2, balance: balance2 }
     case 3:
-      return { rows: rows3, columns: columns3, balance: balance3 }
+      return { rows: rows3, columns: columns3, march: march3, balance: balance3 }
     case 4:
-      return { rows: rows4, columns: columns4, balance: balance4 }
+      return { rows: rows4, columns: columns4, march: march4, balance: balance4 }
     case 5:
-      return { rows: rows5, columns: columns5, balance: balance5 }
+      return { rows: rows5, columns: columns5, march: march5, balance: balance5 }
     default:
       return {
         rows: (a, count, b, out) => rowsAny(n, a, count, b, out),
         columns: (b, c, count, out) => columnsAny(n, b, c, count, out),
+        march: (b, states, count) => marchAny(n, b, states, count),
         balance: (a, count) => balanceAny(n, a, count)
       }
   }
 }
 
+/** Four columns of B at a time: one load of A serves four sums. */
 function rowsAny(n: number, a: Float64Array, count: number, b: Float64Array, out: Float64Array): void {
+  const fours = n - (n % 4)
   for (let p = 0; p < n * count; p += n) {
-    for (let j = 0; j < n; j++) {
+    for (let j = 0; j < fours; j += 4) {
+      let s0 = 0
+      let s1 = 0
+      let s2 = 0
+      let s3 = 0
+      for (let k = 0, q = j; k < n; k++, q += n) {
+        const factor = a[p + k]
+        s0 += factor * b[q]
+        s1 += factor * b[q + 1]
+        s2 += factor * b[q + 2]
+        s3 += factor * b[q + 3]
+      }
+      out[p + j] = s0
+      out[p + j + 1] = s1
+      out[p + j + 2] = s2
+      out[p + j + 3] = s3
+    }
+    for (let j = fours; j < n; j++) {
       let sum = 0
-      for (let k = 0; k < n; k++) sum += a[p + k] * b[k * n + j]
+      for (let k = 0, q = j; k < n; k++, q += n) sum += a[p + k] * b[q]
       out[p + j] = sum
     }
   }
@@ -346,5 +368,145 @@ function balance5(a: Float64Array, count: number): void {
     a[p + 2] *= f2
     a[p + 3] *= f3
     a[p + 4] *= f4
+  }
+}
+
+function marchAny(n: number, b: Float64Array, states: Float64Array, count: number): void {
+  for (let p = 0; p < n * count; p += n) {
+    for (let i = 0; i < n; i++) {
+      let sum = 0
+      for (let k = 0; k < n; k++) sum += b[i * n + k] * states[p + k]
+      states[p + n + i] = sum
+    }
+  }
+}
+
+function march2(b: Float64Array, states: Float64Array, count: number): void {
+  const b00 = b[0],
+    b01 = b[1]
+  const b10 = b[2],
+    b11 = b[3]
+  let x0 = states[0]
+  let x1 = states[1]
+  for (let p = 2; p <= 2 * count; p += 2) {
+    const y0 = b00 * x0 + b01 * x1
+    const y1 = b10 * x0 + b11 * x1
+    states[p] = y0
+    states[p + 1] = y1
+    x0 = y0
+    x1 = y1
+  }
+}
+
+function march3(b: Float64Array, states: Float64Array, count: number): void {
+  const b00 = b[0],
+    b01 = b[1],
+    b02 = b[2]
+  const b10 = b[3],
+    b11 = b[4],
+    b12 = b[5]
+  const b20 = b[6],
+    b21 = b[7],
+    b22 = b[8]
+  let x0 = states[0]
+  let x1 = states[1]
+  let x2 = states[2]
+  for (let p = 3; p <= 3 * count; p += 3) {
+    const y0 = b00 * x0 + b01 * x1 + b02 * x2
+    const y1 = b10 * x0 + b11 * x1 + b12 * x2
+    const y2 = b20 * x0 + b21 * x1 + b22 * x2
+    states[p] = y0
+    states[p + 1] = y1
+    states[p + 2] = y2
+    x0 = y0
+    x1 = y1
+    x2 = y2
+  }
+}
+
+function march4(b: Float64Array, states: Float64Array, count: number): void {
+  const b00 = b[0],
+    b01 = b[1],
+    b02 = b[2],
+    b03 = b[3]
+  const b10 = b[4],
+    b11 = b[5],
+    b12 = b[6],
+    b13 = b[7]
+  const b20 = b[8],
+    b21 = b[9],
+    b22 = b[10],
+    b23 = b[11]
+  const b30 = b[12],
+    b31 = b[13],
+    b32 = b[14],
+    b33 = b[15]
+  let x0 = states[0]
+  let x1 = states[1]
+  let x2 = states[2]
+  let x3 = states[3]
+  for (let p = 4; p <= 4 * count; p += 4) {
+    const y0 = b00 * x0 + b01 * x1 + b02 * x2 + b03 * x3
+    const y1 = b10 * x0 + b11 * x1 + b12 * x2 + b13 * x3
+    const y2 = b20 * x0 + b21 * x1 + b22 * x2 + b23 * x3
+    const y3 = b30 * x0 + b31 * x1 + b32 * x2 + b33 * x3
+    states[p] = y0
+    states[p + 1] = y1
+    states[p + 2] = y2
+    states[p + 3] = y3
+    x0 = y0
+    x1 = y1
+    x2 = y2
+    x3 = y3
+  }
+}
+
+function march5(b: Float64Array, states: Float64Array, count: number): void {
+  const b00 = b[0],
+    b01 = b[1],
+    b02 = b[2],
+    b03 = b[3],
+    b04 = b[4]
+  const b10 = b[5],
+    b11 = b[6],
+    b12 = b[7],
+    b13 = b[8],
+    b14 = b[9]
+  const b20 = b[10],
+    b21 = b[11],
+    b22 = b[12],
+    b23 = b[13],
+    b24 = b[14]
+  const b30 = b[15],
+    b31 = b[16],
+    b32 = b[17],
+    b33 = b[18],
+    b34 = b[19]
+  const b40 = b[20],
+    b41 = b[21],
+    b42 = b[22],
+    b43 = b[23],
+    b44 = b[24]
+  let x0 = states[0]
+  let x1 = states[1]
+  let x2 = states[2]
+  let x3 = states[3]
+  let x4 = states[4]
+  for (let p = 5; p <= 5 * count; p += 5) {
+    const y0 = b00 * x0 + b01 * x1 + b02 * x2 + b03 * x3 + b04 * x4
+    const y1 = b10 * x0 + b11 * x1 + b12 * x2 + b13 * x3 + b14 * x4
+    const y2 = b20 * x0 + b21 * x1 + b22 * x2 + b23 * x3 + b24 * x4
+    const y3 = b30 * x0 + b31 * x1 + b32 * x2 + b33 * x3 + b34 * x4
+    const y4 = b40 * x0 + b41 * x1 + b42 * x2 + b43 * x3 + b44 * x4
+    states[p] = y0
+    states[p + 1] = y1
+    states[p + 2] = y2
+    states[p + 3] = y3
+    states[p + 4] = y4
+    x0 = y0
+    x1 = y1
+    x2 = y2
+    x3 = y3
+    x4 = y4
   }
 }

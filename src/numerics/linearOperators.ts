@@ -61,7 +61,7 @@ export class LinearOperators {
     this.#columns = new Float64Array(n * m)
     this.#products = new Float64Array(n * m)
     this.#direct = new Float64Array(f * m)
-    this.#stepDecays = new Float64Array(f)
+    this.#stepDecays = new Float64Array(f).fill(1)
     this.#exponents = new Float64Array(f)
   }
 
@@ -74,6 +74,7 @@ export class LinearOperators {
   /** Go over to another individual's rates and functionals, of the same sizes. */
   use(rates: Rates, functionals: readonly Functional[]): void {
     this.#form.use(rates, functionals)
+    this.#stepDecays.fill(1)
   }
 
   /**
@@ -107,7 +108,8 @@ export class LinearOperators {
 
   /** e^(-decay T) over the present step, computed afresh every time: squaring it would double its error. */
   #decay(): void {
-    const { f, decays } = this.#form
+    const { f, decays, decaying } = this.#form
+    if (!decaying) return
     const step = this.#step[0]
     for (let r = 0; r < f; r++) this.#exponents[r] = decays[r] * step
     decaysInto(this.#exponents, this.#stepDecays)

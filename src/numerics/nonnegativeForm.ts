@@ -21,6 +21,8 @@ export class NonnegativeForm {
   readonly gaps: Float64Array
   /** At least every outflow and decay. */
   sigma = 0
+  /** Whether any row decays: areas and the sink do not. */
+  decaying = false
 
   constructor(rates: Rates, functionals: readonly Functional[], inputs: readonly number[]) {
     const n = rates.size
@@ -48,6 +50,7 @@ export class NonnegativeForm {
       throw new RangeError(`operators of ${f - 1} functionals cannot use ${functionals.length}`)
     checkRates(rates)
     let sigma = 0
+    this.decaying = false
     for (let j = 0; j < n; j++) {
       weights[j] = rates.out[j]
       sigma = Math.max(sigma, outflow(rates, j))
@@ -57,6 +60,7 @@ export class NonnegativeForm {
       checkFunctional(functional, n)
       for (let j = 0; j < n; j++) weights[r * n + j] = functional.weights[j]
       decays[r] = functional.decay
+      if (functional.decay > 0) this.decaying = true
       sigma = Math.max(sigma, functional.decay)
     }
     for (let r = 0; r < f; r++) gaps[r] = sigma - decays[r]

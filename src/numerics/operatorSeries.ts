@@ -112,8 +112,9 @@ export class OperatorSeries {
     const { n, f } = this.#form
     const stride = strideOf(degree)
     const highest = this.#powers[stride]
-    this.#stack.fill(0)
-    for (let p = 0; p < n * n; p++) this.#stack[p] = INVERSE_FACTORIAL[degree] * highest[p]
+    const start = this.#stack
+    for (let p = 0; p < n * n; p++) start[p] = INVERSE_FACTORIAL[degree] * highest[p]
+    for (let p = n * n; p < start.length; p++) start[p] = 0
     for (let lowest = degree - stride; lowest >= 0; lowest -= stride) {
       if (lowest < degree - stride) {
         this.#kernel.rows(this.#stack, n + 2 * f, highest, this.#nextStack)
@@ -159,18 +160,19 @@ export class OperatorSeries {
     const stride = strideOf(degree)
     const products = this.#columnProducts
     const p = this.#rowCoefficients
-    products.fill(0)
+    for (let q = 0; q < n * m; q++) products[q] = 0
     for (let lowest = degree - stride; lowest >= 0; lowest -= stride) {
       if (lowest < degree - stride) this.#kernel.columns(this.#powers[stride], columns, m, products)
       for (let c = 0; c < m; c++) {
         const input = inputs[c]
-        products[c * n + input] += p[lowest]
+        const own = c * n
+        products[own + input] += p[lowest]
         for (let k = 1; k < stride; k++) {
           const power = this.#powers[k]
-          for (let i = 0; i < n; i++) products[c * n + i] += p[lowest + k] * power[i * n + input]
+          for (let i = 0; i < n; i++) products[own + i] += p[lowest + k] * power[i * n + input]
         }
+        for (let i = own; i < own + n; i++) columns[i] = products[i]
       }
-      columns.set(products)
     }
   }
 }

@@ -28,4 +28,25 @@ for (const n of [1, 2, 3, 4, 5, 6, 9]) {
       }
     }
   })
+
+  test(`marching with a ${n} x ${n} matrix is one product after another`, () => {
+    const b = whole(n * n, 5)
+    const states = new Float64Array(4 * n)
+    states.set(whole(n, 3))
+    kernelFor(n).march(b, states, 3)
+    for (const step of [1, 2, 3]) {
+      const expected = new Float64Array(n)
+      kernelFor(n).columns(b, states.slice((step - 1) * n, step * n), 1, expected)
+      expect([...states.slice(step * n, (step + 1) * n)]).toEqual([...expected])
+    }
+  })
+
+  test(`balancing brings every column of ${n} to the sum 1, and leaves what is below alone`, () => {
+    // Powers of 2, so that dividing by a column's sum is exact: 3 rows of 1, 1 and 2.
+    const a = Float64Array.from({ length: 4 * n }, (_, p) => (p < 2 * n ? 1 : 2) * 2 ** (p % n))
+    kernelFor(n).balance(a, 3)
+    for (let j = 0; j < n; j++) {
+      expect([a[j], a[n + j], a[2 * n + j], a[3 * n + j]]).toEqual([0.25, 0.25, 0.5, 2 * 2 ** j])
+    }
+  })
 }
