@@ -1,6 +1,8 @@
 import { areaBetween, extremes, valueAt } from './curve'
 import { effectiveHalfLife, operationalHalfLife } from './halfLives'
 import { startsOf } from './intervals'
+import { isLinear } from './model'
+import { NO_ACCUMULATION, NO_EFFECTIVE_HALF_LIFE } from './nonlinearWords'
 import type { OperatorStore } from './operatorStore'
 import type { NumberOrReason } from './reasons'
 import { carriedPart, firstPeriod, type SteadyPeriod } from './steadyPeriod'
@@ -19,6 +21,13 @@ const OBSERVED: Signal = { kind: 'observed' }
 
 /** Accumulation over one period of a steady state: each a number, or why there is none. */
 export function accumulationOf(steady: SteadyPeriod, store: OperatorStore): Accumulation {
+  if (!isLinear(steady.model)) {
+    return {
+      ...noAccumulation(NO_ACCUMULATION),
+      effectiveHalfLife: NO_EFFECTIVE_HALF_LIFE,
+      operationalHalfLife: NO_EFFECTIVE_HALF_LIFE
+    }
+  }
   if (steady.lines.length === 0) return noAccumulation('no dose line repeats: an infusion runs without end')
   const { period, course } = steady
   const first = firstPeriod(steady, store)

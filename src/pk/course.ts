@@ -5,17 +5,17 @@ import type { Administration, Dose } from './dose'
 import type { Issue } from './issue'
 import { OperatorStore } from './operatorStore'
 import type { Prescription, SessionLine } from './prescription'
-import { propagate } from './propagate'
 import { continuedLine, continuedSession, isEndless, prolonged, repeatsAtEnd } from './repeating'
 import type { Segment } from './segment'
 import { dosesDuringSessions } from './sessionOverlap'
 import { type Session, sessionsBefore, tooManySessions } from './sessions'
 import { type Beginning, emptyBeginning, steadyBeginning } from './startInSteadyState'
-import type { BodyState } from './state'
+import { type BodyState, emptyState } from './state'
 import type { Stretch } from './subject'
 import { timeline } from './timeline'
 import { isBefore } from './times'
 import type { Trajectory } from './trajectory'
+import { type Method, methodFor, trajectoryOf } from './trajectoryOf'
 
 export interface CourseRequest {
   readonly prescription: Prescription
@@ -39,6 +39,8 @@ export interface Course {
   /** At time 0, before anything that enters at that time. */
   readonly initial: BodyState
   readonly trajectory: Trajectory
+  /** Exactly, or by the integrator at its working tolerance. */
+  readonly method: Method
   readonly end: Hours
   /** What was done with the prescription and a reader must know. */
   readonly notes: readonly string[]
@@ -105,7 +107,8 @@ function run(request: CourseRequest, end: Hours): CourseOutcome {
     sessions,
     segments,
     initial: beginning.state,
-    trajectory: propagate(segments, beginning.state, store),
+    trajectory: trajectoryOf(segments, beginning.state, store),
+    method: methodFor(segments),
     end,
     notes: [...beginning.notes, ...written.notes, ...dosesDuringSessions(prescription.lines, given, sessions)]
   }
@@ -114,11 +117,13 @@ function run(request: CourseRequest, end: Hours): CourseOutcome {
 
 function beginningOf(request: CourseRequest, store: OperatorStore): Beginning {
   const { subject } = request.stretches[0]
-  if (request.prescription.start === 'empty') return emptyBeginning(subject)
   try {
-    return steadyBeginning(request.prescription, subject, request.path, store)
+    return request.prescription.start === 'empty'
+      ? emptyBeginning(subject)
+      : steadyBeginning(request.prescription, subject, request.path, store)
   } catch (failure) {
     if (!(failure instanceof NumericalFailure) || failure.code !== 'no-way-out') throw failure
-    return { ...emptyBeginning(subject), issues: [{ path: `${request.path}.start`, message: failure.message }] }
+    const issues = [{ path: `${request.path}.start`, message: failure.message }]
+    return { state: emptyState(subject.model), carried: [], issues, notes: [] }
   }
 }

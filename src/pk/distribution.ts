@@ -4,6 +4,7 @@ import type { Course } from './course'
 import { type IntervalExposure, intervalsOfCourse } from './intervals'
 import { offsetIn, pieceIndexAt } from './locate'
 import { isLinear } from './model'
+import { NO_END_OF_DISTRIBUTION } from './nonlinearWords'
 import { type PartsPiece, phaseParts } from './phaseParts'
 import { rulingPhase } from './phases'
 import { isBefore } from './times'
@@ -22,6 +23,11 @@ export interface DistributionOver {
   readonly readableFrom: Hours | undefined
   /** Elapsed end of the interval: the time up to which such a sample may be taken. */
   readonly readableTo: Hours
+  /**
+   * Whether the model has a phase for distribution, so that any accurately timed sample may serve to estimate the patient;
+   * without one only a sample after distribution may.
+   */
+  readonly describesDistribution: boolean
   readonly why?: string
 }
 
@@ -45,7 +51,7 @@ const NEVER = 'never within this interval'
 export function distributionOver(course: Course, sampleAfter: SampleAfter | undefined): DistributionOver[] {
   const intervals = intervalsOfCourse(course, { kind: 'observed' })
   const linear = course.segments.every(({ model }) => isLinear(model))
-  const parts = linear ? phaseParts(course.trajectory) : 'the model is not linear: it has no phases'
+  const parts = linear ? phaseParts(course.trajectory) : NO_END_OF_DISTRIBUTION
   return intervals.map((interval, index) => inInterval(course, parts, interval, index, sampleAfter))
 }
 
@@ -72,6 +78,7 @@ function inInterval(
     byPhases,
     readableFrom: late ? undefined : readableFrom,
     readableTo: interval.end,
+    describesDistribution: typeof parts !== 'string' && found !== NOT_DESCRIBED,
     ...(why !== undefined && { why })
   }
 }

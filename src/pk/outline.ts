@@ -30,8 +30,8 @@ export function outline(piece: Piece, signal: Signal, from: Hours, to: Hours): O
     const probe = piece.probes[k]
     if (probe <= from) continue
     const right = sampled(piece, signal, Math.min(probe, to))
-    addTurns(piece, signal, left, right, DEEPEST, points)
-    points.push({ offset: right.offset, value: right.value, turn: right.offset >= to })
+    const turnsAtRight = addTurns(piece, signal, left, right, DEEPEST, points)
+    points.push({ offset: right.offset, value: right.value, turn: turnsAtRight || right.offset >= to })
     left = right
     if (right.offset >= to) break
   }
@@ -48,7 +48,10 @@ function sampled(piece: Piece, signal: Signal, offset: Hours): Sample {
   return { offset, value: piece.concentration(signal, offset), slope: piece.slope(signal, offset) }
 }
 
-/** Append the turning points strictly between two samples, ascending. */
+/**
+ * Append the turning points strictly between two samples, ascending. Returns whether the curve turns at the right one: where
+ * the slope of an integrated piece jumps through zero, or is 0 there itself.
+ */
 function addTurns(
   piece: Piece,
   signal: Signal,
@@ -56,19 +59,21 @@ function addTurns(
   right: Sample,
   depth: number,
   points: OutlinePoint[]
-): void {
+): boolean {
   if (left.slope * right.slope < 0 || Math.sign(left.slope) * Math.sign(right.slope) < 0) {
     const offset = rootBetween((at) => piece.slope(signal, at), left.offset, right.offset)
     if (offset > left.offset && offset < right.offset) {
       points.push({ offset, value: piece.concentration(signal, offset), turn: true })
     }
-    return
+    return offset >= right.offset
   }
   const dip = depth > 0 ? possibleDip(left, right) : undefined
-  if (dip === undefined) return
+  if (dip === undefined) return right.slope === 0 && left.slope !== 0
   const middle = sampled(piece, signal, dip)
-  addTurns(piece, signal, left, middle, depth - 1, points)
-  addTurns(piece, signal, middle, right, depth - 1, points)
+  if (addTurns(piece, signal, left, middle, depth - 1, points)) {
+    points.push({ offset: middle.offset, value: middle.value, turn: true })
+  }
+  return addTurns(piece, signal, middle, right, depth - 1, points)
 }
 
 /** Where the slope, of one sign at both ends, comes closest to zero between them, if it comes close at all. */

@@ -1,4 +1,5 @@
 import type { ReadonlyVector } from '../numerics/vector'
+import { IntegratedPiece } from './integratedPiece'
 import { LinearPiece } from './linearPiece'
 import { isLinear, type Model } from './model'
 import { OperatorStore } from './operatorStore'
@@ -32,10 +33,12 @@ export function propagate(
   return { end: last.start + last.duration, initial, pieces }
 }
 
-/** State at the end of a trajectory made by `propagate`: before anything given at that time. */
+/** State at the end of a trajectory made by `propagate` or `integrate`: before anything given at that time. */
 export function finalState(trajectory: Trajectory): BodyState {
   const piece = trajectory.pieces.at(-1)
-  if (!(piece instanceof LinearPiece)) throw new RangeError('only a propagated trajectory has a final state')
+  if (!(piece instanceof LinearPiece || piece instanceof IntegratedPiece)) {
+    throw new RangeError('only a propagated or integrated trajectory has a final state')
+  }
   return piece.stateAt(piece.segment.duration)
 }
 

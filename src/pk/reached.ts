@@ -1,15 +1,18 @@
 import { areaToInfinity } from '../numerics/gth'
+import type { ReadonlyVector } from '../numerics/vector'
 import type { Hours, MilligramHoursPerLitre, MilligramsPerLitre } from '../units/canonical'
 import { type Course, type CourseRequest, continuedCourse } from './course'
 import { areaBetween, valueAt } from './curve'
 import { startsOf } from './intervals'
 import { linearForm } from './linearRates'
-import { observedVolume } from './model'
+import { offsetIn, pieceIndexAt } from './locate'
+import { isLinear, observedVolume } from './model'
 import { finalState } from './propagate'
-import { isEndless } from './repeating'
+import { continuedLine, isEndless } from './repeating'
+import { isSettled } from './settled'
 import type { BodyState } from './state'
 import type { SteadyPeriod } from './steadyPeriod'
-import { isBefore } from './times'
+import { isBefore, sameTime } from './times'
 import type { Signal } from './trajectory'
 
 /** Searched over this many periods. */
@@ -44,7 +47,8 @@ const OBSERVED: Signal = { kind: 'observed' }
  * When 90 % of the steady state is reached, for the regimen as written with what repeats continued: windows of one period
  * from the first repeating dose; the end of the first window from which on every window is within 10 %. Up to 1,000
  * periods are followed; fewer where the areas that all later windows could still differ by are bounded below 10 % by the
- * area to infinity of what the body holds too much or too little.
+ * area to infinity of what the body holds too much or too little, or, in a model that is not linear, where every amount is
+ * within 1 % of its steady state.
  */
 export function reached(request: CourseRequest, steady: SteadyPeriod, values: SteadyValues): Reached {
   const { period, origin } = steady
@@ -102,7 +106,8 @@ function lowestTroughs(course: Course, request: CourseRequest, steady: SteadyPer
   const repeating = course.administrations.filter(({ line }) => steady.lines.includes(line))
   const times = startsOf(repeating).map(({ at }) => at)
   // The dose that would follow at the end of the last window is not in the course.
-  if (!isBefore(origin + periods * period, course.end) && !movesLaterDoses(request)) times.push(course.end)
+  const moved = steady.lines.some((line) => movedBy(request, line) !== 0)
+  if (!isBefore(origin + periods * period, course.end) && !moved) times.push(course.end)
   for (const time of times) {
     const k = windowEndingAt(time, origin, period)
     if (k < 0 || k >= periods) continue
@@ -125,6 +130,7 @@ function windowEndingAt(time: Hours, origin: Hours, period: Hours): number {
 function staysNear(course: Course, request: CourseRequest, steady: SteadyPeriod, values: SteadyValues): boolean {
   if (isBefore(course.end, settledBy(course, request)) || movesLaterDoses(request)) return false
   const now: BodyState = finalState(course.trajectory)
+  if (!isLinear(steady.model)) return atStartOfPeriod(course, steady) && isSettled(steady.model, now, steady.state)
   const excess = Array.from(now.amounts, (amount, i) => Math.abs(amount - steady.state.amounts[i]))
   const volume = observedVolume(steady.model)
   // Sessions only take drug away, so that the model without them bounds the area.
@@ -133,6 +139,12 @@ function staysNear(course: Course, request: CourseRequest, steady: SteadyPeriod,
   if (!(area <= NEAR * Math.min(values.auc, change > 0 ? change : values.auc))) return false
   const level = excess.reduce((sum, amount) => sum + amount, 0) / volume
   return values.trough === undefined || level <= NEAR * values.trough
+}
+
+/** Whether a course ends where a period of the steady state begins. */
+function atStartOfPeriod(course: Course, { origin, period }: SteadyPeriod): boolean {
+  const count = Math.round((course.end - origin) / period)
+  return sameTime(course.end, origin + count * period)
 }
 
 /** When all that was given or begun before the end of the study is over, endless infusions apart. */
@@ -151,7 +163,25 @@ function settledBy(course: Course, request: CourseRequest): Hours {
   return settled
 }
 
-/** Whether a dose that was late has moved the later ones, so that they no longer come at the start of a window. */
-function movesLaterDoses(request: CourseRequest): boolean {
-  return request.prescription.lines.some((line) => line.exceptions.some(({ shiftsLater }) => shiftsLater === true))
+/**
+ * Amounts at steady state at the end of a window: before the first dose of a period, or, where a late dose has moved all
+ * later ones, as much earlier in it. Undefined where lines have been moved by different times.
+ */
+function steadyAmountsAtEnd(request: CourseRequest, steady: SteadyPeriod): ReadonlyVector | undefined {
+  const [moved = 0, ...others] = steady.lines.map((line) => movedBy(request, line))
+  if (others.some((other) => !sameTime(other, moved))) return undefined
+  const turns = moved / steady.period
+  const earlier = moved - Math.round(turns) * steady.period
+  if (Math.abs(turns - Math.round(turns)) < 1e-12) return steady.state.amounts
+  const time = earlier > 0 ? steady.period - earlier : -earlier
+  const piece = steady.course.pieces[pieceIndexAt(steady.course, time)]
+  const amounts = new Float64Array(steady.state.amounts.length)
+  piece.amountsInto(offsetIn(piece, time), amounts)
+  return amounts
+}
+
+/** By how much late doses have moved the later doses of a line, in all. */
+function movedBy({ prescription, until }: CourseRequest, line: number): Hours {
+  const { exceptions } = continuedLine(prescription.lines[line], until)
+  return exceptions.reduce((sum, { shiftsLater, lateBy = 0 }) => (shiftsLater === true ? sum + lateBy : sum), 0)
 }

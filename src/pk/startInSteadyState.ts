@@ -2,13 +2,14 @@ import type { Hours } from '../units/canonical'
 import { multipleOf } from '../units/spacing'
 import { MOST_DOSES } from './administrations'
 import type { Dose } from './dose'
+import { drugFreeState } from './drugFree'
 import type { Issue } from './issue'
+import { isLinear } from './model'
 import type { OperatorStore } from './operatorStore'
-import { periodicState } from './periodic'
-import { periodicSegments } from './periodicSegments'
 import type { DoseLine, Prescription } from './prescription'
+import { type Recurring, recurringState } from './recurring'
 import { regularDose } from './regularDose'
-import { type BodyState, emptyState, sumOfStates } from './state'
+import type { BodyState } from './state'
 import type { Subject } from './subject'
 import { isBefore, sameTime } from './times'
 
@@ -22,15 +23,15 @@ export interface Beginning {
   readonly notes: readonly string[]
 }
 
-/** A regimen that begins in an empty body. */
+/** A regimen that begins in a body without drug. Throws `NumericalFailure` 'no-way-out' where what the body makes never leaves. */
 export function emptyBeginning(subject: Subject): Beginning {
-  return { state: emptyState(subject.model), carried: [], issues: [], notes: [] }
+  return { state: drugFreeState(subject.model), carried: [], issues: [], notes: [] }
 }
 
 /**
  * As if every line that repeats with `at` < `every` had always been given at `at` + k `every`, k < 0 included, to the
- * person as at 0, exceptions left out. Each line has its own periodic state at time 0; they add. Throws
- * `NumericalFailure` 'no-way-out' where drug that enters can never leave.
+ * person as at 0, exceptions left out. An issue where these have no steady state, or, in a model that is not linear, no
+ * common period. Throws `NumericalFailure` 'no-way-out' where what enters or is produced can never leave.
  */
 export function steadyBeginning(
   prescription: Prescription,
@@ -38,11 +39,10 @@ export function steadyBeginning(
   path: string,
   store: OperatorStore
 ): Beginning {
-  let state = emptyState(subject.model)
   const carried: Dose[] = []
   const issues: Issue[] = []
   const notes: string[] = []
-  let repeating = 0
+  const repeating: Recurring[] = []
   prescription.lines.forEach((line, index) => {
     if (line.every === undefined) return
     const period = multipleOf(line.every, 1)
@@ -57,19 +57,21 @@ export function steadyBeginning(
       issues.push({ path: `${path}.doses[${index}].${doses.key}`, message: doses.message })
       return
     }
-    repeating += 1
-    state = sumOfStates(
-      state,
-      periodicState(periodicSegments({ model: subject.model, period, doses, sessions: [] }), store)
-    )
+    repeating.push({ every: line.every, doses })
     for (const dose of doses) {
       const before = carriedOver(dose, line)
       if (before === undefined) issues.push({ path: `${path}.start`, message: tooMany(index) })
       else carried.push(...before)
     }
   })
-  if (repeating === 0) notes.push('no dose line repeats from the start on: the body is empty at 0 h')
-  return { state, carried, issues, notes }
+  if (repeating.length === 0) {
+    const body = isLinear(subject.model) ? 'the body is empty' : 'the body has no drug'
+    notes.push(`no dose line repeats from the start on: ${body} at 0 h`)
+  }
+  const outcome = recurringState(subject.model, repeating, store)
+  if (outcome.kind === 'steady') return { state: outcome.state, carried, issues, notes }
+  issues.push({ path: `${path}.start`, message: outcome.why })
+  return { ...emptyBeginning(subject), issues, notes }
 }
 
 function tooMany(index: number): string {

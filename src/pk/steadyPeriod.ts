@@ -1,4 +1,3 @@
-import { NumericalFailure } from '../numerics/numericalFailure'
 import type { ReadonlyVector } from '../numerics/vector'
 import type { Hours } from '../units/canonical'
 import { multipleOf, type Spacing } from '../units/spacing'
@@ -6,15 +5,17 @@ import { administrations, subjectAt } from './administrations'
 import { commonPeriod } from './commonPeriod'
 import type { Course, CourseRequest } from './course'
 import type { Administration, Dose } from './dose'
-import { isLinear, type Model } from './model'
+import type { Model } from './model'
 import { OperatorStore } from './operatorStore'
-import { constantState, periodicState } from './periodic'
+import type { Convergence } from './periodicIntegrated'
 import { periodicSegments } from './periodicSegments'
 import type { DoseLine } from './prescription'
 import { propagate } from './propagate'
 import { isEndless, repeatsAtEnd } from './repeating'
+import type { Segment } from './segment'
 import type { Session } from './sessions'
 import type { BodyState } from './state'
+import { constantSolution, periodicSolution } from './steadySolution'
 import type { Subject } from './subject'
 import { timeline } from './timeline'
 import { isBefore, sameTime } from './times'
@@ -38,6 +39,10 @@ export interface SteadyPeriod {
   readonly state: BodyState
   /** One period at steady state. */
   readonly course: Trajectory
+  /** The period as segments, to start from `state`. */
+  readonly segments: readonly Segment[]
+  /** How the iteration for the state ended; undefined for a linear model, whose state is solved for at once. */
+  readonly convergence?: Convergence
 }
 
 /** An endless infusion alone: nothing changes any more. */
@@ -60,16 +65,7 @@ const CONSTANT_FOR: Hours = 24
 export function steadyPeriodOf(course: Course, request: CourseRequest): SteadyOutcome {
   const { until, stretches } = request
   const subject = subjectAt(stretches, until)
-  if (!isLinear(subject.model)) {
-    return { kind: 'none', why: 'the steady state of a model that is not linear is not computed' }
-  }
-  const store = request.store ?? new OperatorStore()
-  try {
-    return solve(course, request, subject, store)
-  } catch (failure) {
-    if (!(failure instanceof NumericalFailure) || failure.code !== 'no-way-out') throw failure
-    return { kind: 'none', why: failure.message }
-  }
+  return solve(course, request, subject, request.store ?? new OperatorStore())
 }
 
 function solve(course: Course, request: CourseRequest, subject: Subject, store: OperatorStore): SteadyOutcome {
@@ -80,10 +76,8 @@ function solve(course: Course, request: CourseRequest, subject: Subject, store: 
   const endless = endlessInputs(course, until, model)
   if (lines.length === 0 && endless === undefined) return { kind: 'none', why: 'no dose repeats at the end' }
   if (lines.length + sessionLines.length === 0 && endless !== undefined) {
-    const none = model.compartments.map(() => 0)
-    const segment = { start: 0, duration: CONSTANT_FOR, model, boluses: none, inputs: endless }
-    const constant = propagate([segment], constantState(model, endless), store)
-    return { kind: 'constant', model, endless, course: constant }
+    const constant = constantSolution(model, endless, CONSTANT_FOR, store)
+    return constant.kind === 'none' ? constant : { kind: 'constant', model, endless, course: constant.course }
   }
   const repeating = lines.map((i) => prescription.lines[i])
   const common = commonPeriod(repeating.flatMap(spacingOf), sessionLines.flatMap(spacingOf))
@@ -112,12 +106,15 @@ function solve(course: Course, request: CourseRequest, subject: Subject, store: 
   })
   const doses = given.flatMap((each) => each.doses)
   const segments = periodicSegments({ model, period, doses, sessions, ...(endless !== undefined && { endless }) })
-  const state = periodicState(segments, store)
+  const solution = periodicSolution(segments, store)
+  if (solution.kind === 'none') return solution
+  const { state, course: once, convergence } = solution
   return {
-    ...{ kind: 'period', period, origin, lines, model, endless, state },
+    ...{ kind: 'period', period, origin, lines, model, endless, segments, state },
     administrations: given,
     sessions: sessions.flatMap((session) => [...earlier(session, period), session]),
-    course: propagate(segments, state, store)
+    course: once,
+    ...(convergence !== undefined && { convergence })
   }
 }
 
