@@ -21,12 +21,16 @@ export type Role =
   | 'clearance'
   | 'rate'
   | 'maximum rate'
+  | 'production rate'
   | 'half-saturation'
   | 'Hill exponent'
   | 'bioavailability'
   | 'lag'
   | 'fraction'
   | 'release time'
+
+/** What contains 1/F where a model is apparent: all that is measured in amounts of drug or in volumes. */
+const PER_BIOAVAILABILITY: readonly Role[] = ['volume', 'clearance', 'maximum rate', 'production rate']
 
 /** Every role of each parameter of a model, by name. A parameter that nothing uses has none. */
 export function rolesOf(drugModel: DrugModel): ReadonlyMap<string, ReadonlySet<Role>> {
@@ -41,7 +45,6 @@ export function rolesOf(drugModel: DrugModel): ReadonlyMap<string, ReadonlySet<R
       case 'elimination':
       case 'transit':
       case 'effect':
-      case 'production':
         add(transfer.rate, 'rate')
         break
       case 'exchange':
@@ -59,6 +62,9 @@ export function rolesOf(drugModel: DrugModel): ReadonlyMap<string, ReadonlySet<R
       case 'binding':
         add(transfer.association, 'rate')
         add(transfer.dissociation, 'rate')
+        break
+      case 'production':
+        add(transfer.rate, 'production rate')
         break
     }
   }
@@ -87,7 +93,7 @@ export function parameterValues(
     const used = roles.get(parameter.name) ?? new Set<Role>()
     const stated = typicalValue(parameter, covariates)
     const value = toCanonical(parameter, stated)
-    const over = drugModel.apparent && (used.has('volume') || used.has('clearance')) ? '/F' : ''
+    const over = drugModel.apparent && PER_BIOAVAILABILITY.some((role) => used.has(role)) ? '/F' : ''
     const { name, unit } = parameter
     values.set(name, { name, label: `${name}${over}`, value, stated, unit })
     const wrong = impossible(value, used)

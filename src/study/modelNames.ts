@@ -59,7 +59,34 @@ function readCompartments(file: ModelFile, path: string, problems: Problems): Ma
     if (compartments.has(id)) problems.add(below(at, 'id'), `there is another compartment "${id}"; ids are unique`)
     else compartments.set(id, { id, observed: observed === true, ...present('volume', volume) })
   }
+  shareVolumes(compartments, bindingsOf(file, path, problems))
   return compartments
+}
+
+/** Target and complex are in the volume of the drug that binds; as many rounds as a complex may bind again. */
+function shareVolumes(compartments: Map<string, DrugCompartment>, bindings: ReturnType<typeof bindingsOf>): void {
+  for (let round = 0; round < bindings.length; round++) {
+    for (const [, { drug, target, complex }] of bindings) {
+      const volume = compartments.get(drug)?.volume
+      if (volume === undefined) continue
+      for (const id of [target, complex]) {
+        const compartment = compartments.get(id)
+        if (compartment !== undefined && compartment.volume === undefined)
+          compartments.set(id, { ...compartment, volume })
+      }
+    }
+  }
+}
+
+type BindingFile = Extract<ModelFile['transfers'][number], { kind: 'binding' }>
+
+/** The sound bindings of a file with their paths. */
+export function bindingsOf(file: ModelFile, path: string, problems: Problems): [string, BindingFile][] {
+  const bindings: [string, BindingFile][] = []
+  for (const [at, transfer] of open(file.transfers, below(path, 'transfers'), problems)) {
+    if (transfer.kind === 'binding') bindings.push([at, transfer])
+  }
+  return bindings
 }
 
 function effectSites(file: ModelFile, path: string, problems: Problems): Set<string> {

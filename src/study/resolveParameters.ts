@@ -49,7 +49,7 @@ export function resolveParameters(request: ParametersRequest): Parameter[] {
       typical: parameter.typical.map((term, i) => resolveTerm(term, below(below(at, 'typical'), i), request)),
       ...assumption(parameter, at, convert)
     })
-    checkVolume(name, parameter, at, request)
+    checkPositive(name, parameter, at, request)
   }
   checkCorrelations(request)
   return parameters
@@ -127,16 +127,31 @@ function resolveTerm(term: ParameterFile['typical'][number], at: string, request
   return { value: term.value, factors, ...(reasons.length > 0 && { assumed: { because: reasons.join('; ') } }) }
 }
 
-/** A volume that is 0 or less whoever the patient is; others come out with the individual. */
-function checkVolume(name: string, parameter: ParameterFile, at: string, { uses, convert }: ParametersRequest): void {
-  if (!uses.get(name)?.some((use) => use.kind === 'volume')) return
-  if (parameter.typical.some((term) => (term.factors ?? []).length > 0)) return
+/** What a constant of 0 or less is refused as, by the key that names the parameter. */
+const POSITIVE: Readonly<Record<string, string>> = {
+  volume: 'volume',
+  maximumRate: 'maximum rate',
+  halfSaturation: 'half-saturation',
+  hill: 'Hill exponent',
+  association: 'association rate',
+  dissociation: 'dissociation rate'
+}
+
+/** What is 0 or less whoever the patient is and must not be; what depends on a covariate comes out with the individual. */
+function checkPositive(name: string, parameter: ParameterFile, at: string, { uses, convert }: ParametersRequest): void {
+  const use = uses.get(name)?.find(({ path, kind }) => kind === 'amountRate' || lastStep(path) in POSITIVE)
+  if (use === undefined || parameter.typical.some((term) => (term.factors ?? []).length > 0)) return
   const sum = parameter.typical.reduce((total, term) => total + term.value, 0)
+  const word = POSITIVE[lastStep(use.path)] ?? 'production rate'
   if (!(sum > 0))
     convert.problems.add(
       below(at, 'typical'),
-      `the volume "${name}" must be greater than 0, got ${sum} ${parameter.unit}`
+      `the ${word} "${name}" must be greater than 0, got ${sum} ${parameter.unit}`
     )
+}
+
+function lastStep(path: string): string {
+  return path.slice(path.lastIndexOf('.') + 1)
 }
 
 function checkCorrelations({ file, path, convert }: ParametersRequest): void {

@@ -1,4 +1,5 @@
 import type { DrugModel, DrugRoute, DrugTransfer } from '../patient/drugModel'
+import { checkBindings } from './checkBindings'
 import { present } from './converter'
 import type { ModelFile } from './file/modelSchema'
 import { ModelNames, type ParameterUse } from './modelNames'
@@ -6,9 +7,6 @@ import { below } from './path'
 import type { Problems } from './problems'
 import { resolveTransfer } from './resolveTransfer'
 import { open } from './soundMembers'
-
-/** Kinds of transfer that the format knows and this version does not compute. */
-const NOT_AVAILABLE_YET: readonly string[] = ['saturable', 'binding', 'production']
 
 export type Structure = Pick<DrugModel, 'compartments' | 'transfers' | 'routes' | 'observations'> & {
   /** Where each parameter is used, and as what. */
@@ -24,12 +22,10 @@ export function resolveStructure(file: ModelFile, path: string, problems: Proble
   checkObserved(names, below(path, 'compartments'), problems)
   const transfers: DrugTransfer[] = []
   for (const [at, transfer] of open(file.transfers, below(path, 'transfers'), problems)) {
-    if (NOT_AVAILABLE_YET.includes(transfer.kind)) {
-      problems.add(below(at, 'kind'), `transfers of kind "${transfer.kind}" are not available yet`)
-    }
     const resolved = resolveTransfer(transfer, at, names)
     if (resolved !== undefined) transfers.push(resolved)
   }
+  checkBindings(file, path, names)
   return {
     compartments: [...names.compartments.values()],
     transfers: inOrderOfSites(transfers, [...names.compartments.keys()]),

@@ -42,6 +42,7 @@ export function resolveTransfer(transfer: TransferFile, at: string, names: Model
       return { kind: 'effect', from, to: transfer.to, rate: rate(transfer.rate) }
     }
     case 'saturable':
+      if (transfer.to !== undefined) checkDistinct(transfer.from, transfer.to, at, names)
       return {
         kind: 'saturable',
         from: names.compartment(transfer.from, below(at, 'from'), 'with volume'),

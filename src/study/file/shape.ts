@@ -92,7 +92,9 @@ function messageOf(issue: z.core.$ZodIssue, name: string): string {
       return `${name} ${issue.message}`
     }
     case 'invalid_type':
-      if (input === undefined) return `${name} is missing; it must be ${EXPECTED[issue.expected] ?? issue.expected}`
+      if (input === undefined) {
+        return `${name} is missing; it must be ${EXPECTED[issue.expected] ?? issue.expected}${MISSING[name] ?? ''}`
+      }
       return `${name} must be ${EXPECTED[issue.expected] ?? issue.expected}, got ${describe(input)}`
     case 'invalid_value':
       return oneOf(name, input, issue.values)
@@ -122,6 +124,11 @@ const EXPECTED: Readonly<Record<string, string>> = {
   record: 'an object in braces',
   array: 'a list in brackets',
   tuple: 'a list in brackets'
+}
+
+/** What is meant where a key is left out. */
+const MISSING: Readonly<Record<string, string>> = {
+  to: ' (for what leaves the body use a transfer of kind "elimination")'
 }
 
 function oneOf(name: string, input: unknown, values: readonly unknown[]): string {

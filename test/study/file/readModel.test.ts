@@ -21,7 +21,7 @@ const withVmax = () =>
       typical: [{ value: 5 }]
     }),
     'transfers[3]',
-    saturable
+    { ...saturable }
   )
 
 const binding = () => {
@@ -38,7 +38,9 @@ const binding = () => {
     association: 'kon',
     dissociation: 'koff'
   })
-  return put(content, 'transfers[4]', { kind: 'production', into: 'receptor', rate: 'kin' })
+  put(content, 'parameters.kdeg', { unit: '/h', typical: [{ value: 0.05 }] })
+  put(content, 'transfers[4]', { kind: 'production', into: 'receptor', rate: 'kin' })
+  return put(content, 'transfers[5]', { kind: 'elimination', from: 'receptor', rate: 'kdeg' })
 }
 
 const effect = (path: string, value: unknown) => () => put(model('pw-102'), path, value)
@@ -52,9 +54,213 @@ const refused: readonly (readonly [string, () => Json, string, RegExp])[] = [
     /nearest is "first-order"/
   ],
   ['an unknown key in a transfer', change('transfers[0].speed', 'ka'), 'transfers[0].speed', /unknown key "speed"/],
-  ['a saturable transfer', withVmax, 'transfers[3].kind', /transfers of kind "saturable" are not available yet/],
-  ['binding', binding, 'transfers[3].kind', /"binding" are not available yet/],
-  ['production', binding, 'transfers[4].kind', /"production" are not available yet/],
+  [
+    'a transfer to nowhere',
+    change('transfers[0].to', undefined),
+    'transfers[0].to',
+    /to is missing.*leaves the body use a transfer of kind "elimination"/
+  ],
+  [
+    'a maximum rate of zero',
+    () => put(withVmax(), 'parameters.Vmax.typical[0].value', 0),
+    'parameters.Vmax.typical',
+    /the maximum rate "Vmax" must be greater than 0, got 0 mg\/h/
+  ],
+  [
+    'a negative maximum rate, summed over its terms',
+    () => put(withVmax(), 'parameters.Vmax.typical', [{ value: 3 }, { value: -5 }]),
+    'parameters.Vmax.typical',
+    /must be greater than 0, got -2 mg\/h/
+  ],
+  [
+    'a negative half-saturation',
+    () => put(withVmax(), 'parameters.Km.typical[0].value', -5),
+    'parameters.Km.typical',
+    /the half-saturation "Km" must be greater than 0, got -5 mg\/L/
+  ],
+  [
+    'a maximum rate in a unit of clearance',
+    () => put(withVmax(), 'parameters.Vmax.unit', 'L/h'),
+    'parameters.Vmax.unit',
+    /"L\/h" is a unit of .*, not of amount per time; use mg\/h/
+  ],
+  [
+    'a half-saturation in a unit of amount',
+    () => put(withVmax(), 'parameters.Km.unit', 'mg'),
+    'parameters.Km.unit',
+    /"mg" is a unit of amount of drug, not of drug concentration/
+  ],
+  [
+    'a maximum rate in moles without the molar mass',
+    () => put(put(withVmax(), 'parameters.Vmax.unit', 'umol/h'), 'drug.molarMass', undefined),
+    'parameters.Vmax.unit',
+    /"umol\/h" counts moles and the model states no molar mass; give drug.molarMass/
+  ],
+  [
+    'a half-saturation in moles without the molar mass',
+    () => put(put(withVmax(), 'parameters.Km.unit', 'nmol/L'), 'drug.molarMass', undefined),
+    'parameters.Km.unit',
+    /"nmol\/L" counts moles and the model states no molar mass/
+  ],
+  [
+    'a Hill exponent of zero',
+    () => put(withVmax(), 'transfers[3].hill', 0),
+    'transfers[3].hill',
+    /must be greater than 0, got 0/
+  ],
+  [
+    'a Hill exponent of zero by its parameter',
+    () => put(put(withVmax(), 'transfers[3].hill', 'h'), 'parameters.h', { unit: '1', typical: [{ value: 0 }] }),
+    'parameters.h.typical',
+    /the Hill exponent "h" must be greater than 0/
+  ],
+  [
+    'a saturable transfer from a compartment without a volume',
+    () => put(withVmax(), 'transfers[3].from', 'depot'),
+    'transfers[3].from',
+    /"depot" needs a volume here/
+  ],
+  [
+    'a saturable transfer from a compartment to itself',
+    () => put(withVmax(), 'transfers[3].to', 'central'),
+    'transfers[3]',
+    /not from "central" to itself/
+  ],
+  [
+    'a half-saturation that is the clearance',
+    () => put(withVmax(), 'transfers[3].halfSaturation', 'CL'),
+    'parameters.CL',
+    /is used as a clearance .* and as a drug concentration/
+  ],
+  [
+    'an association rate of zero',
+    () => put(binding(), 'parameters.kon.typical[0].value', 0),
+    'parameters.kon.typical',
+    /the association rate "kon" must be greater than 0, got 0 L\/nmol\/h/
+  ],
+  [
+    'an association rate in moles without the molar mass',
+    () => put(binding(), 'drug.molarMass', undefined),
+    'parameters.kon.unit',
+    /"L\/nmol\/h" counts moles and the model states no molar mass/
+  ],
+  [
+    'an association rate of first order',
+    () => put(binding(), 'parameters.kon.unit', '/h'),
+    'parameters.kon.unit',
+    /"\/h" is a unit of rate constant, not of second-order rate constant; use L\/mg\/h/
+  ],
+  [
+    'a dissociation rate of zero',
+    () => put(binding(), 'parameters.koff.typical[0].value', 0),
+    'parameters.koff.typical',
+    /the dissociation rate "koff" must be greater than 0/
+  ],
+  [
+    'a negative production',
+    () => put(binding(), 'parameters.kin.typical[0].value', -2),
+    'parameters.kin.typical',
+    /the production rate "kin" must be greater than 0, got -2 nmol\/h/
+  ],
+  [
+    'a production per volume',
+    () => put(binding(), 'parameters.kin.unit', 'nmol/L/h'),
+    'parameters.kin.unit',
+    /unknown unit "nmol\/L\/h"/
+  ],
+  [
+    'a binding of two compartments',
+    () => put(binding(), 'transfers[3].complex', 'central'),
+    'transfers[3]',
+    /drug, target and complex of a binding are three compartments; "central" is drug and complex/
+  ],
+  [
+    'a binding whose target does not exist',
+    () => put(binding(), 'transfers[3].target', 'recepter'),
+    'transfers[3].target',
+    /no compartment is called "recepter"; the nearest is "receptor"/
+  ],
+  [
+    'a binding of drug without a volume',
+    () => put(binding(), 'transfers[3].drug', 'depot'),
+    'transfers[3].drug',
+    /"depot" needs a volume here/
+  ],
+  [
+    'a binding to an unknown approximation',
+    () => put(binding(), 'transfers[3].approximation', 'quasi-equilibrium'),
+    'transfers[3].approximation',
+    /must be one of "none", "quasi-steady-state".*the nearest is "quasi-steady-state"/
+  ],
+  [
+    'a complex in a volume of its own',
+    () => put(binding(), 'compartments[4].volume', 'V2'),
+    'compartments[4].volume',
+    /"complex" is in the volume of "central".*or name "V1"/
+  ],
+  [
+    'a dose into a target',
+    () => put(binding(), 'routes[0].into', 'receptor'),
+    'routes[0].into',
+    /"receptor" is a binding target, which holds no drug: it takes no dose/
+  ],
+  [
+    'a target that is observed',
+    () => put(put(binding(), 'compartments[1].observed', undefined), 'compartments[3].observed', true),
+    'compartments[3].observed',
+    /is a binding target, which holds no drug; show it under "observations"/
+  ],
+  [
+    'a target that nothing produces',
+    () => put(binding(), 'transfers', (binding().transfers as Json[]).slice(0, 4)),
+    'transfers[3].target',
+    /nothing produces the target "receptor".*add a transfer "production"/
+  ],
+  [
+    'a target that is never lost',
+    () => put(binding(), 'transfers', (binding().transfers as Json[]).slice(0, 5)),
+    'transfers[3].target',
+    /produced and never lost.*add an "elimination" from it/
+  ],
+  [
+    'a production of drug',
+    () => put(binding(), 'transfers[6]', { kind: 'production', into: 'central', rate: 'kin' }),
+    'transfers[6].into',
+    /production is of a binding's target, and "central" is none/
+  ],
+  [
+    'a transfer from a complex to its target, which would lose the drug',
+    () => put(binding(), 'transfers[6]', { kind: 'first-order', from: 'complex', to: 'receptor', rate: 'kdeg' }),
+    'transfers[6]',
+    /"receptor" is a binding target: it joins other compartments by its binding alone/
+  ],
+  [
+    'a target that is the complex of another binding',
+    () =>
+      put(put(binding(), 'compartments[5]', { id: 'second' }), 'transfers[6]', {
+        ...(binding().transfers as Json[])[3],
+        target: 'complex',
+        complex: 'second'
+      }),
+    'transfers[6].target',
+    /"complex" is the complex of another binding \(transfers\[3\].complex\)/
+  ],
+  [
+    'two approximated bindings of one drug',
+    () => {
+      const content = put(put(binding(), 'compartments[5]', { id: 'receptor2' }), 'compartments[6]', { id: 'complex2' })
+      put(content, 'transfers[3].approximation', 'quasi-steady-state')
+      put(content, 'transfers[6]', {
+        ...(content.transfers as Json[])[3],
+        target: 'receptor2',
+        complex: 'complex2'
+      })
+      put(content, 'transfers[7]', { kind: 'production', into: 'receptor2', rate: 'kin' })
+      return put(content, 'transfers[8]', { kind: 'elimination', from: 'receptor2', rate: 'kdeg' })
+    },
+    'transfers[6].approximation',
+    /"central" takes part in another binding in quasi-steady state \(transfers\[3\]\)/
+  ],
   [
     'an unknown compartment',
     change('transfers[0].to', 'centrl'),
@@ -394,6 +600,26 @@ describe('a model file is accepted', () => {
   test.each(readdirSync('models/drugs'))('as shipped: %s', (file) => {
     const reading = readModel(new Uint8Array(readFileSync(`models/drugs/${file}`)))
     expect(reading.ok ? [] : reading.issues).toEqual([])
+  })
+
+  test('with saturable elimination, its maximum rate in any amount per time and a Hill exponent', () => {
+    expect(issuesOf(withVmax())).toEqual([])
+    for (const unit of ['g/d', 'ug/min', 'umol/h']) {
+      expect(issuesOf(put(withVmax(), 'parameters.Vmax.unit', unit))).toEqual([])
+    }
+    for (const unit of ['ug/mL', 'umol/L']) expect(issuesOf(put(withVmax(), 'parameters.Km.unit', unit))).toEqual([])
+    expect(issuesOf(put(withVmax(), 'transfers[3].hill', 1.4))).toEqual([])
+  })
+
+  test('with binding, full or in quasi-steady state, a target cleared by volume and total target observed', () => {
+    expect(issuesOf(binding())).toEqual([])
+    expect(issuesOf(put(binding(), 'parameters.kon.unit', 'L/mg/h'))).toEqual([])
+    expect(issuesOf(put(binding(), 'transfers[3].approximation', 'quasi-steady-state'))).toEqual([])
+    expect(issuesOf(put(binding(), 'transfers[5]', { kind: 'clearance', from: 'receptor', clearance: 'CL' }))).toEqual(
+      []
+    )
+    expect(issuesOf(put(binding(), 'observations', [{ id: 'target', of: ['receptor', 'complex'] }]))).toEqual([])
+    expect(issuesOf(put(binding(), 'compartments[4].volume', 'V1'))).toEqual([])
   })
 
   test('with a covariate of its own in a unit outside the table', () => {
