@@ -10,6 +10,9 @@ import { inputColumns } from './propagate'
 import type { Segment } from './segment'
 import type { Piece, Trajectory } from './trajectory'
 
+/** Operators kept for one model. */
+const KEPT = 2048
+
 /** A model's phases, ready to follow the part that each has in the concentration. */
 interface PhasedModel {
   readonly disposition: Disposition
@@ -82,8 +85,8 @@ class PartOperators {
   readonly phases: readonly Phase[]
   readonly inputs: readonly number[]
   readonly #operators: LinearOperators
-  readonly #operator: Operator
-  #offset: Hours | undefined
+  readonly #empty: () => Operator
+  readonly #made = new Map<Hours, Operator>()
 
   constructor({ disposition, phases }: PhasedModel, inputs: readonly number[]) {
     const { rates, members, model } = disposition
@@ -98,13 +101,18 @@ class PartOperators {
     this.phases = phases
     this.inputs = inputs
     this.#operators = new LinearOperators(rates, functionals, inputs)
-    this.#operator = emptyOperator(size, inputs.length, functionals.length)
+    this.#empty = () => emptyOperator(size, inputs.length, functionals.length)
   }
 
+  /** What the phases take up in `offset` hours. Equal segments ask for the same offsets again. */
   at(offset: Hours): Operator {
-    if (this.#offset !== offset) this.#operators.into(offset, this.#operator)
-    this.#offset = offset
-    return this.#operator
+    const known = this.#made.get(offset)
+    if (known !== undefined) return known
+    if (this.#made.size >= KEPT) this.#made.clear()
+    const operator = this.#empty()
+    this.#operators.into(offset, operator)
+    this.#made.set(offset, operator)
+    return operator
   }
 }
 

@@ -128,10 +128,12 @@ function windowEndingAt(time: Hours, origin: Hours, period: Hours): number {
  * body holds too much or too little then, whose whole future area and whose every later level are small enough.
  */
 function staysNear(course: Course, request: CourseRequest, steady: SteadyPeriod, values: SteadyValues): boolean {
-  if (isBefore(course.end, settledBy(course, request)) || movesLaterDoses(request)) return false
+  const goal = steadyAmountsAtEnd(request, steady)
+  if (goal === undefined || isBefore(course.end, settledBy(course, request))) return false
+  if (!endsWithPeriod(course, steady)) return false
   const now: BodyState = finalState(course.trajectory)
-  if (!isLinear(steady.model)) return atStartOfPeriod(course, steady) && isSettled(steady.model, now, steady.state)
-  const excess = Array.from(now.amounts, (amount, i) => Math.abs(amount - steady.state.amounts[i]))
+  if (!isLinear(steady.model)) return isSettled(steady.model, now, { ...now, amounts: goal })
+  const excess = Array.from(now.amounts, (amount, i) => Math.abs(amount - goal[i]))
   const volume = observedVolume(steady.model)
   // Sessions only take drug away, so that the model without them bounds the area.
   const area = areaToInfinity(linearForm(steady.model).rates, excess)[steady.model.observed] / volume
@@ -141,8 +143,8 @@ function staysNear(course: Course, request: CourseRequest, steady: SteadyPeriod,
   return values.trough === undefined || level <= NEAR * values.trough
 }
 
-/** Whether a course ends where a period of the steady state begins. */
-function atStartOfPeriod(course: Course, { origin, period }: SteadyPeriod): boolean {
+/** Whether a course ends with a period. */
+function endsWithPeriod(course: Course, { origin, period }: SteadyPeriod): boolean {
   const count = Math.round((course.end - origin) / period)
   return sameTime(course.end, origin + count * period)
 }

@@ -1,3 +1,4 @@
+import { readFileSync } from 'node:fs'
 import { describe, expect, test } from 'vitest'
 import { decrementTimes, timeToFall } from '../../src/pk/decrement'
 import type { Model } from '../../src/pk/model'
@@ -259,6 +260,19 @@ describe('decrement times', () => {
       expectWithin(times.by50 ?? Number.NaN, Math.LN2 / 0.2, { relative: 1e-12 })
       expectWithin(times.by80 ?? Number.NaN, Math.log(5) / 0.2, { relative: 1e-12 })
       expect(times.own).toBe(times.infusion === 3)
+    }
+  })
+
+  // Sums of exponentials in 32-digit arithmetic: test/reference/generate/pk_exposure.py.
+  test('20, 50 and 80 % in plasma and at the effect site of remifentanil, minutes', () => {
+    const { cases } = JSON.parse(readFileSync('test/reference/pk/exposure.json', 'utf8'))
+    const model = mammillary(minto)
+    for (const { site, infusion, falls } of cases.decrements) {
+      const signal = site === 'plasma' ? ({ kind: 'observed' } as const) : ({ kind: 'effect-site', index: 0 } as const)
+      ;[0.2, 0.5, 0.8].forEach((share, i) => {
+        const time = timeToFall(model, signal, infusion, share) ?? Number.NaN
+        expectWithin(time, falls[i], { relative: 1e-11 }, `${share} at ${site} after ${infusion} min`)
+      })
     }
   })
 

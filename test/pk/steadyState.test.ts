@@ -251,6 +251,26 @@ describe('90 % of the steady state', () => {
     expect(steadyState.reached90OfChange).toBe(240 + 8 * Math.ceil(Math.log(10) / 0.4))
   })
 
+  test('a late dose that moves the later ones: the windows stay, the steady state comes in its own rhythm', () => {
+    const k = 0.05
+    const subject = subjectOf(oneCompartment({ volume: 10, k }))
+    const late = line(100, { every: hours(8), exceptions: [{ number: 2, lateBy: 3, shiftsLater: true }] })
+    const { steadyState } = exposureFor(subject, [late], 48)
+    const times = [0, ...Array.from({ length: 200 }, (_, i) => 11 + 8 * i)]
+    const given = (to: number) =>
+      times.filter((t) => t < to).reduce((sum, t) => sum + (10 / k) * (1 - Math.exp(-k * (to - t))), 0)
+    const off = Array.from({ length: 100 }, (_, n) => given(8 * (n + 1)) - given(8 * n)).map(
+      (area) => Math.abs(area - 10 / k) > 1 / k
+    )
+    expect(steadyState.reached90).toBe(8 * (off.lastIndexOf(true) + 2))
+    const troughs = Array.from({ length: 100 }, (_, n) =>
+      times.slice(0, n + 1).reduce((sum, t) => sum + 10 * Math.exp(-k * (times[n + 1] - t)), 0)
+    )
+    const goal = 10 / Math.expm1(8 * k)
+    const last = troughs.findLastIndex((trough) => Math.abs(trough - goal) > 0.1 * goal)
+    expect(steadyState.reached90ByTrough).toBe(8 * Math.ceil(times[last + 2] / 8))
+  })
+
   test('a patient whose elimination is too slow for 1,000 periods has none', () => {
     const subject = subjectOf(oneCompartment({ volume: 10, k: 1e-5 }))
     const { steadyState } = exposureFor(subject, [line(1, { every: hours(1) })], 24)
@@ -280,6 +300,22 @@ describe('the person of the steady state', () => {
     const x = (500 * (a * s * a + a)) / (1 - a * a * s)
     expectWithin(number(steadyState.intervals.at(-1)?.trough, 'trough'), x / 20, exact)
     expect(steadyState.why.operationalHalfLife).toMatch(/holds 2 doses/)
+  })
+
+  test('under an endless infusion with sessions that repeat: a period without doses', () => {
+    const subject = subjectOf(oneCompartment({ volume: 20, k: 0.02 }))
+    const { steadyState } = exposureFor(subject, [line(960, { over: 96 })], 96, {
+      sessions: [{ at: 20, duration: 4, clearance: 5, every: hours(24) }]
+    })
+    expect([steadyState.period, steadyState.origin]).toEqual([24, 20])
+    // 10 mg/h against k = 0.27 /h for 4 h and 0.02 /h for 20 h: the highest level is where a session starts.
+    const [a, b] = [Math.exp(-4 * 0.27), Math.exp(-20 * 0.02)]
+    const x = ((10 / 0.27) * (1 - a) * b + (10 / 0.02) * (1 - b)) / (1 - a * b)
+    expectWithin(number(steadyState.peak, 'peak'), x / 20, exact)
+    expect(steadyState.peakTime).toBe(0)
+    expect(steadyState.why.accumulationRatio).toMatch(/^no dose line repeats/)
+    expect(steadyState.why.trough).toBe('an infusion runs through the whole interval')
+    expect(steadyState.intervals).toEqual([])
   })
 
   test('in whom drug never leaves has none, with the reason', () => {
