@@ -1,5 +1,5 @@
 import type { Hours, Milligrams } from '../units/canonical'
-import type { ComputedCovariate, CovariateName } from './person'
+import type { CovariateName } from './person'
 
 /**
  * A model file, checked and in canonical units: what is known of a drug before it meets a person.
@@ -222,6 +222,3 @@ export interface DrugRoute {
     readonly over?: string
   }[]
 }
-
-/** Covariates that the program can compute; each may be given directly instead. */
-export type { ComputedCovariate }
