@@ -48,7 +48,8 @@ export class PartsPiece {
     const operator = this.#operators.at(offset)
     return this.phases.map(({ eigenvalue, coefficient }, i) => {
       const infused = (coefficient * this.#direct * -expm1(-eigenvalue * offset)) / eigenvalue
-      return exp(-eigenvalue * offset) * this.#start[i] + absorbed(operator, i, this.#amounts, this.#rates) + infused
+      const taken = absorbed(operator, i, this.#amounts, this.#rates)
+      return exp(-eigenvalue * offset) * this.#start[i] + (coefficient < 0 ? -taken : taken) + infused
     })
   }
 }
@@ -56,9 +57,9 @@ export class PartsPiece {
 /**
  * The parts of the phases along a trajectory of a linear model: the response of each phase to the actual input. Drug from
  * before the disposition enters by a functional row that decays with the phase (METHODS 1.2), a bolus by its coefficient,
- * an infusion by its integral; no difference of two rates is formed and no part is negative. Where the model changes, and
- * for drug in the body at time 0, the amounts are taken apart anew into the phases of the model then in force; parts may
- * be negative from there on. In words why the parts are not defined.
+ * an infusion by its integral; no difference of two rates is formed, and the part of a phase with a positive coefficient
+ * is never negative. Where the model changes, and for drug in the body at time 0, the amounts are taken apart anew into
+ * the phases of the model then in force; parts may be negative from there on. In words why the parts are not defined.
  */
 export function phaseParts(trajectory: Trajectory): readonly PartsPiece[] | string {
   const models = new Map<Model, PhasedModel>()
@@ -94,7 +95,7 @@ class PartOperators {
     const inside = new Set(members)
     const functionals = phases.map(({ eigenvalue, coefficient }) => ({
       weights: Array.from({ length: size }, (_, j) =>
-        inside.has(j) ? 0 : coefficient * between[model.observed * size + j]
+        inside.has(j) ? 0 : Math.abs(coefficient) * between[model.observed * size + j]
       ),
       decay: eigenvalue
     }))

@@ -80,6 +80,9 @@ export interface PhasesRequest {
   readonly infusions: readonly Hours[]
 }
 
+/** A coefficient below this part of the largest is that of a phase that a bolus does not set off. */
+const ROUNDING = 1e-13
+
 /** A phase rules that carries at least this much of the area. */
 export const RULING_SHARE = 0.1
 
@@ -131,7 +134,10 @@ export function phasesOf(request: PhasesRequest): PhasesOfStretch {
   }
 }
 
-/** The phases of a disposition, fastest first; in words why it has none of their own. */
+/**
+ * The phases of a disposition, fastest first; in words why it has none of their own. Coefficients are positive where every
+ * exchange goes both ways; in a ring one may be negative.
+ */
 export function phasesOfDisposition(disposition: Disposition): readonly Phase[] | string {
   const phases: Phase[] = []
   for (const { eigenvalue, coefficient, shareOfArea, why } of disposition.terms) {
@@ -139,14 +145,13 @@ export function phasesOfDisposition(disposition: Disposition): readonly Phase[] 
     if (coefficient === undefined || shareOfArea === undefined || halfLife === undefined) {
       return why ?? 'part of the drug never leaves, so that the area is not finite'
     }
-    // A phase that a bolus does not set off has coefficient 0 up to rounding, on either side of it.
-    phases.push({
-      ...{ eigenvalue: rate, halfLife },
-      coefficient: Math.max(0, coefficient),
-      shareOfAuc: Math.max(0, shareOfArea)
-    })
+    phases.push({ eigenvalue: rate, halfLife, coefficient, shareOfAuc: shareOfArea })
   }
-  return phases
+  const largest = Math.max(...phases.map(({ coefficient }) => Math.abs(coefficient)))
+  return phases.map((phase) => {
+    const isRounding = Math.abs(phase.coefficient) <= ROUNDING * largest
+    return isRounding ? { ...phase, coefficient: 0, shareOfAuc: 0 } : phase
+  })
 }
 
 /** Position of the slowest phase that carries at least 10 % of the area. */
