@@ -1,6 +1,7 @@
 import { NumericalFailure } from '../numerics/numericalFailure'
 import type { Hours } from '../units/canonical'
 import { administrations, withoutRepeats } from './administrations'
+import { continuedTrajectory } from './continued'
 import type { Administration, Dose } from './dose'
 import type { Issue } from './issue'
 import { OperatorStore } from './operatorStore'
@@ -58,8 +59,9 @@ export function courseOf(request: CourseRequest): CourseOutcome {
 /**
  * The same regimen with what repeats at `until` continued to a later `end`: lines and sessions that repeat go on without
  * their count, an infusion still running at `until` runs on, the person stays as at `until`, all else is as written.
+ * Where it has to be integrated, `earlier` is a course of the same regimen whose pieces are used as far as they go.
  */
-export function continuedCourse(request: CourseRequest, end: Hours): CourseOutcome {
+export function continuedCourse(request: CourseRequest, end: Hours, earlier?: Course): CourseOutcome {
   const { prescription, until } = request
   return run(
     {
@@ -68,11 +70,12 @@ export function continuedCourse(request: CourseRequest, end: Hours): CourseOutco
       sessions: request.sessions.map((line) => continuedSession(line, until)),
       stretches: request.stretches.filter((stretch) => !isBefore(until, stretch.from))
     },
-    end
+    end,
+    earlier
   )
 }
 
-function run(request: CourseRequest, end: Hours): CourseOutcome {
+function run(request: CourseRequest, end: Hours, earlier?: Course): CourseOutcome {
   const { prescription, stretches, until, path } = request
   const store = request.store ?? new OperatorStore()
   const repeats = (line: number): boolean => repeatsAtEnd(prescription.lines[line], until)
@@ -83,7 +86,10 @@ function run(request: CourseRequest, end: Hours): CourseOutcome {
     untilOfLine: (line) => (repeats(line) ? end : until),
     path
   })
-  const beginning = beginningOf(request, store)
+  const beginning: Beginning =
+    earlier === undefined
+      ? beginningOf(request, store)
+      : { state: earlier.initial, carried: earlier.carried, issues: [], notes: [] }
   const sessionEnd = (line: SessionLine): Hours => (repeatsAtEnd(line, until) ? end : until)
   const sessionIssues = tooManySessions(request.sessions, end, 'patient.sessions')
   const issues = withoutRepeats([...written.issues, ...beginning.issues, ...sessionIssues])
@@ -100,6 +106,7 @@ function run(request: CourseRequest, end: Hours): CourseOutcome {
     sessions,
     until: end
   })
+  const method = methodFor(segments)
   const course: Course = {
     prescription,
     administrations: given,
@@ -107,8 +114,11 @@ function run(request: CourseRequest, end: Hours): CourseOutcome {
     sessions,
     segments,
     initial: beginning.state,
-    trajectory: trajectoryOf(segments, beginning.state, store),
-    method: methodFor(segments),
+    trajectory:
+      earlier !== undefined && method === 'integrated'
+        ? continuedTrajectory(segments, earlier.trajectory)
+        : trajectoryOf(segments, beginning.state, store),
+    method,
     end,
     notes: [...beginning.notes, ...written.notes, ...dosesDuringSessions(prescription.lines, given, sessions)]
   }

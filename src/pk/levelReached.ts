@@ -39,7 +39,7 @@ export function levelReached(request: CourseRequest, constant: ConstantLevel): H
 
 /** Whether no later level can be more than 10 % from the goal. */
 function staysNear({ model }: ConstantLevel, now: BodyState, steady: BodyState, goal: MilligramsPerLitre): boolean {
-  if (!isLinear(model)) return isSettled(model, now, steady)
+  if (!isLinear(model)) return isSettled(model, now.amounts, steady.amounts, NEAR)
   const excess = Array.from(now.amounts, (amount, i) => Math.abs(amount - steady.amounts[i]))
   return excess.reduce((sum, amount) => sum + amount, 0) / observedVolume(model) <= NEAR * goal
 }

@@ -93,7 +93,7 @@ function periodicValues(
     swing: throughout ? INFUSION_THROUGHOUT : minimum > 0 ? (peak - minimum) / minimum : 'the minimum is 0',
     ...accumulation,
     troughRatio: trough === undefined ? INFUSION_THROUGHOUT : accumulation.troughRatio,
-    ...reachedValues(reached(request, steady, { auc, trough, aucBefore }), trough, aucBefore),
+    ...reachedValues(reached(request, steady, { auc, trough, aucBefore }, course), trough, aucBefore),
     reached90ByLevel: 'defined for an infusion without end alone',
     ...shares(steady.course, window, period)
   }
