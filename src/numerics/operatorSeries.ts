@@ -21,7 +21,7 @@ function factorial(k: number): number {
 export class OperatorSeries {
   readonly #form: NonnegativeForm
   readonly #kernel: Kernel
-  /** N^k at index k, from 1 to 4. */
+  /** N^k at index k, from 1 to 4; at index 0 as many zeros as any of these or of the rows has numbers. */
   readonly #powers: readonly Float64Array[]
   /** T r N^k of all rows at index k, from 0 to 3. */
   readonly #lowRows: readonly Float64Array[]
@@ -32,6 +32,8 @@ export class OperatorSeries {
   /** Coefficients of R and H, a set for each row. Those of Phi are the set of the sink, whose decay is 0. */
   readonly #rowCoefficients: Float64Array
   readonly #directCoefficients: Float64Array
+  /** Where each row's set begins: rows of one decay share it, as the sink and all areas do. */
+  readonly #sets: Int32Array
   /** nu and e^-nu. */
   readonly #nu = new Float64Array(1)
   readonly #damping = new Float64Array(1)
@@ -40,13 +42,14 @@ export class OperatorSeries {
     const { n, m, f } = form
     this.#form = form
     this.#kernel = kernel
-    this.#powers = Array.from({ length: 5 }, () => new Float64Array(n * n))
+    this.#powers = Array.from({ length: 5 }, (_, k) => new Float64Array(k === 0 ? Math.max(n, f) * n : n * n))
     this.#lowRows = Array.from({ length: 4 }, () => new Float64Array(f * n))
     this.#stack = new Float64Array((n + 2 * f) * n)
     this.#nextStack = new Float64Array((n + 2 * f) * n)
     this.#columnProducts = new Float64Array(m * n)
     this.#rowCoefficients = new Float64Array(f * TERMS)
     this.#directCoefficients = new Float64Array(f * TERMS)
+    this.#sets = new Int32Array(f)
   }
 
   /**
@@ -60,7 +63,11 @@ export class OperatorSeries {
     for (let p = 0; p < first.length; p++) first[p] = shifted[p] * step
     for (let p = 0; p < sources.length; p++) sources[p] = weights[p] * step
     this.#nu[0] = sigma * step
-    for (let r = 0; r < f; r++) this.#setCoefficients(r, degree, gaps[r] * step)
+    for (let r = 0; r < f; r++) {
+      const shared = gaps[r] === gaps[0]
+      this.#sets[r] = shared ? 0 : r * TERMS
+      if (r === 0 || !shared) this.#setCoefficients(r * TERMS, degree, gaps[r] * step)
+    }
     this.#raisePowers(degree)
     this.#sumStack(degree)
     this.#sumColumns(degree, columns)
@@ -80,10 +87,9 @@ export class OperatorSeries {
    * Coefficients by synthetic division of sum x^k / k!, once at mu for R and once more for H:
    * q_{j-1} = 1 / j! + mu q_j; g_{j-1} = p_j + mu g_j, p those of the sink, at nu.
    */
-  #setCoefficients(r: number, degree: number, mu: number): void {
+  #setCoefficients(own: number, degree: number, mu: number): void {
     const q = this.#rowCoefficients
     const g = this.#directCoefficients
-    const own = r * TERMS
     q[own + degree] = 0
     g[own + degree] = 0
     g[own + degree - 1] = 0
@@ -130,26 +136,37 @@ export class OperatorSeries {
   #addLowPowers(lowest: number, stride: number): void {
     const { n, f } = this.#form
     const stack = this.#stack
-    const q = this.#rowCoefficients
-    const g = this.#directCoefficients
+    const [absent, first] = this.#powers
+    const second = stride > 2 ? this.#powers[2] : absent
+    const third = stride > 3 ? this.#powers[3] : absent
+    const c1 = INVERSE_FACTORIAL[lowest + 1]
+    const c2 = INVERSE_FACTORIAL[lowest + 2]
+    const c3 = INVERSE_FACTORIAL[lowest + 3]
+    for (let p = 0; p < n * n; p++) stack[p] += c1 * first[p] + c2 * second[p] + c3 * third[p]
     for (let i = 0; i < n; i++) stack[i * n + i] += INVERSE_FACTORIAL[lowest]
-    for (let k = 1; k < stride; k++) {
-      const power = this.#powers[k]
-      const coefficient = INVERSE_FACTORIAL[lowest + k]
-      for (let p = 0; p < n * n; p++) stack[p] += coefficient * power[p]
+    for (let r = 0; r < f; r++) {
+      const term = this.#sets[r] + lowest
+      this.#addLowRow(r, term, stride, this.#rowCoefficients, (n + r) * n)
+      this.#addLowRow(r, term, stride, this.#directCoefficients, (n + f + r) * n)
     }
-    for (let k = 0; k < stride; k++) {
-      const low = this.#lowRows[k]
-      for (let r = 0; r < f; r++) {
-        const ofRow = q[r * TERMS + lowest + k]
-        const ofDirect = g[r * TERMS + lowest + k]
-        const row = (n + r) * n
-        const direct = (n + f + r) * n
-        for (let j = 0; j < n; j++) {
-          stack[row + j] += ofRow * low[r * n + j]
-          stack[direct + j] += ofDirect * low[r * n + j]
-        }
-      }
+  }
+
+  /** The same for one row that starts at `place` in the stack, with its coefficients from `term` on. */
+  #addLowRow(r: number, term: number, stride: number, coefficients: Float64Array, place: number): void {
+    const { n } = this.#form
+    const stack = this.#stack
+    const [sources, first] = this.#lowRows
+    const absent = this.#powers[0]
+    const second = stride > 2 ? this.#lowRows[2] : absent
+    const third = stride > 3 ? this.#lowRows[3] : absent
+    const c0 = coefficients[term]
+    const c1 = coefficients[term + 1]
+    const c2 = coefficients[term + 2]
+    const c3 = coefficients[term + 3]
+    const row = r * n
+    for (let j = 0; j < n; j++) {
+      const p = row + j
+      stack[place + j] += c0 * sources[p] + c1 * first[p] + c2 * second[p] + c3 * third[p]
     }
   }
 

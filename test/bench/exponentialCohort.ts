@@ -1,5 +1,6 @@
 import { kernelFor } from '../../src/numerics/kernels'
 import { LinearOperators } from '../../src/numerics/linearOperators'
+import type { Functional } from '../../src/numerics/operator'
 import { fillMammillary, mammillary, uniformFrom } from './exponentialModels'
 
 const N = 4
@@ -11,10 +12,11 @@ const VOLUME = 20
  */
 export function cohortChecksum(patients: number): number {
   const uniform = uniformFrom(20261)
+  const none: readonly Functional[] = []
   const between = new Float64Array(N * N)
   const out = new Float64Array(N)
   const rates = { size: N, between, out }
-  const operators = new LinearOperators(mammillary(N, [1, 1, 1, 1]), [], [])
+  const operators = new LinearOperators(mammillary(N, [1, 1, 1, 1]), none, [])
   const operator = operators.create()
   const { march } = kernelFor(N)
   const states = new Float64Array(13 * N)
@@ -24,7 +26,7 @@ export function cohortChecksum(patients: number): number {
   for (let patient = 0; patient < patients; patient++) {
     for (let k = 0; k < 4; k++) scale[k] = 0.5 + uniform()
     fillMammillary(N, scale, between, out)
-    operators.use(rates, [])
+    operators.use(rates, none)
     operators.into(1, operator)
     for (let i = 0; i < N; i++) states[12 * N + i] = 0
     levels[0] = 0

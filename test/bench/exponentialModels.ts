@@ -20,9 +20,10 @@ export function fillMammillary(n: number, scale: readonly number[], between: Flo
 
 /** A seeded stream of numbers in [0, 1), the same in the peers. */
 export function uniformFrom(seed: number): () => number {
+  // Kept as a signed whole number: an unsigned one above 2^31 would be allocated.
   let state = seed
   return () => {
-    state = (Math.imul(state, 1664525) + 1013904223) >>> 0
-    return state / 4294967296
+    state = (Math.imul(state, 1664525) + 1013904223) | 0
+    return (state >>> 0) / 4294967296
   }
 }
