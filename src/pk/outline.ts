@@ -1,5 +1,6 @@
 import { rootBetween } from '../numerics/root'
 import type { Hours, MilligramsPerLitre } from '../units/canonical'
+import { IntegratedPiece } from './integratedPiece'
 import type { Piece, Signal } from './trajectory'
 
 /** A point of a curve over one piece. Between two neighbouring points the curve rises or falls all the way. */
@@ -22,7 +23,25 @@ const ROUNDING = 1e-14
  * found as a root of the slope. Between probes with slopes of one sign, the parabola that has these slopes and the curve's
  * rise as its area tells whether the slope may dip through zero and back; if so the stretch is looked into.
  */
-export function outline(piece: Piece, signal: Signal, from: Hours, to: Hours): OutlinePoint[] {
+export function outline(piece: Piece, signal: Signal, from: Hours, to: Hours): readonly OutlinePoint[] {
+  if (!(piece instanceof IntegratedPiece && from === 0 && to === piece.segment.duration)) {
+    return pointsOf(piece, signal, from, to)
+  }
+  const known = wholePieces.get(piece) ?? new Map<string, readonly OutlinePoint[]>()
+  wholePieces.set(piece, known)
+  const key = signal.kind === 'observed' ? signal.kind : `${signal.kind} ${signal.index}`
+  const points = known.get(key) ?? pointsOf(piece, signal, from, to)
+  known.set(key, points)
+  return points
+}
+
+/**
+ * Outlines of whole integrated pieces, for as long as these live: intervals, days, targets and windows all ask for them,
+ * and they are no larger than the steps that such a piece keeps.
+ */
+const wholePieces = new WeakMap<IntegratedPiece, Map<string, readonly OutlinePoint[]>>()
+
+function pointsOf(piece: Piece, signal: Signal, from: Hours, to: Hours): OutlinePoint[] {
   const first = sampled(piece, signal, from)
   const points: OutlinePoint[] = [{ offset: from, value: first.value, turn: true }]
   let left = first

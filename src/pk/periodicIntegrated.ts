@@ -27,7 +27,7 @@ export interface PeriodicSolution {
 }
 
 /** What a periodic state is integrated with: its error is that of one period over 1 - (what is carried over to the next). */
-export const PERIODIC_TOLERANCE: IntegrationTolerance = { relative: 1e-10 }
+export const PERIODIC_TOLERANCE: IntegrationTolerance = { relative: 1e-10, floor: 1e-4 }
 
 /** How closely a stage of the iteration looks. */
 export interface Stage {
@@ -38,7 +38,7 @@ export interface Stage {
   readonly goal: number
 }
 
-const ROUGH: Stage = { tolerance: { relative: 1e-6 }, nudge: 1e-3, goal: 1e-3 }
+const ROUGH: Stage = { tolerance: { relative: 1e-6, floor: 1e-2 }, nudge: 1e-3, goal: 1e-4 }
 const FINE: Stage = { tolerance: PERIODIC_TOLERANCE, nudge: 1e-5, goal: 1e-9 }
 /** Corrections that no longer become smaller are good enough below this. */
 const NEARLY = 1e-6
@@ -48,7 +48,7 @@ const MOST_ROUNDS = 60
 const LEAST = 1e-6
 /** The same where an amount is nudged for a difference quotient. */
 const LEAST_NUDGED = 1e-3
-/** A correction takes away no more than this of an amount. */
+/** A correction takes away no more than this part of an amount. */
 const MOST_REMOVED = 0.9
 const HALVINGS = 6
 /** Corrections that shrink by less than this from one to the next call for new difference quotients. */
@@ -68,7 +68,9 @@ export function periodicIntegrated(segments: readonly Segment[], guess?: Readonl
   const { model } = segments[0]
   const baseline = drugFreeState(model)
   if (map.size === 0) return { state: baseline, convergence: { rounds: 0, periods: 0, change: 0 } }
-  const iteration = new PeriodicIteration(map, map.coordinates(guess ?? firstGuess(segments)))
+  const from = map.coordinates(guess ?? firstGuess(segments))
+  // A period brings what enters once in it, and a depot with it, near where it is at the start of one.
+  const iteration = new PeriodicIteration(map, guess === undefined ? map.after(from, ROUGH.tolerance) : from)
   iteration.run(ROUGH)
   iteration.run(FINE)
   const amounts = map.amounts(iteration.coordinates)
@@ -192,14 +194,8 @@ export class PeriodicIteration {
   #take(correction: Float64Array, stage: Stage): boolean {
     const now = this.#size(this.#excess)
     let share = 1
-    for (let p = 0; p < correction.length; p++) {
-      if (correction[p] < -MOST_REMOVED * this.#at[p]) {
-        share = Math.min(share, (MOST_REMOVED * this.#at[p]) / -correction[p])
-      }
-    }
-    if (!(share > 0)) return false
     for (let k = 0; k < HALVINGS; k++, share *= 0.5) {
-      const next = this.#at.map((value, p) => value + share * correction[p])
+      const next = this.#at.map((value, p) => Math.max(value + share * correction[p], (1 - MOST_REMOVED) * value))
       const excess = this.#excessAt(next, stage)
       // Near the answer what is left of the excess is rounding, and need not become smaller.
       if (!(this.#size(excess) < now) && now > 10 * stage.tolerance.relative) continue

@@ -2,7 +2,7 @@ import type { ReadonlyVector } from '../numerics/vector'
 import { isLinear, type Model } from './model'
 
 /** No amount may be further from its steady state than this part of the margin: levels and areas follow the amounts closely. */
-const WELL_WITHIN = 0.3
+const WELL_WITHIN = 0.5
 /** A margin below this would ask for digits that a course looked at for its time does not have. */
 const LEAST_MARGIN = 1e-4
 /** Compartments that hold less than this part of all there is of their kind count by that part. */
