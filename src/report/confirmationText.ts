@@ -7,8 +7,10 @@ export const NOT_PROVED =
 /** `the arithmetic is confirmed by a second method (3 in 10^10)`: the largest relative difference, rounded up. */
 export function agreementInWords(confirmation: Confirmation): string {
   const difference = confirmation.largestRelativeDifference
-  if (difference === 0) return 'the arithmetic is confirmed by a second method, to the last digit'
+  const how =
+    confirmation.by === 'second method' ? 'by a second method' : 'by the same method at a hundredth of its tolerance'
+  if (difference === 0) return `the arithmetic is confirmed ${how}, to the last digit`
   const exponent = Math.ceil(-Math.log10(difference) - 1e-12)
   const parts = Math.ceil(difference * 10 ** exponent)
-  return `the arithmetic is confirmed by a second method (${parts} in 10^${exponent})`
+  return `the arithmetic is confirmed ${how} (${parts} in 10^${exponent})`
 }
