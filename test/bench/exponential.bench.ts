@@ -8,20 +8,27 @@ import { buildPeer, median, type PeerResult, pythonWithScipy, runPeer } from './
  * and a cohort against the same algorithm in C and CVODE. Sides take turns within one run; medians of the rounds, and the
  * ratio of the best rounds, which says more on a machine that others use too.
  */
-const ROUNDS = 15
+const ROUNDS = 25
+/** Short slices, a few milliseconds, of which on a busy machine some run undisturbed; whole weeks of durations. */
+const CALLS = 3500
+const CALLS_OF_LARGE = 700
+const WARM_UP = 60
 const SIZES = [3, 4, 5, 8, 12]
 
-function exponential(n: number, calls: number): PeerResult {
+/** Operators of n compartments, made once: a cohort keeps them, too. Runs them over and over and times that. */
+function exponential(n: number): (calls: number) => PeerResult {
   const area = { weights: Array.from({ length: n }, (_, i) => (i === 1 ? 1 / 20 : 0)), decay: 0 }
   const operators = new LinearOperators(mammillary(n, [1, 1, 1, 1]), [area], [1])
   const operator = operators.create()
-  let checksum = 0
-  const start = performance.now()
-  for (let call = 0; call < calls; call++) {
-    operators.into(0.5 + (call % 7), operator)
-    checksum += operator.transition[n + 1] + operator.direct[0]
+  return (calls) => {
+    let checksum = 0
+    const start = performance.now()
+    for (let call = 0; call < calls; call++) {
+      operators.into(0.5 + (call % 7), operator)
+      checksum += operator.transition[n + 1] + operator.direct[0]
+    }
+    return { figure: ((performance.now() - start) * 1e6) / calls, checksum }
   }
-  return { figure: ((performance.now() - start) * 1e6) / calls, checksum }
 }
 
 /** Refuse to compare times of things that do not compute the same. */
@@ -35,13 +42,14 @@ function compareExponentials(): void {
   console.log(`Exponential with sink, area row and input column; median of ${ROUNDS} rounds`)
   const python = pythonWithScipy()
   for (const n of SIZES) {
-    const calls = n <= 5 ? 35000 : 7000
-    exponential(n, calls)
+    const calls = n <= 5 ? CALLS : CALLS_OF_LARGE
+    const run = exponential(n)
+    run(WARM_UP * calls)
     const program = buildPeer('expm.c', `expm${n}`, [`-DN=${n}`])
     const ours: PeerResult[] = []
     const theirs: PeerResult[] = []
     for (let round = 0; round < ROUNDS; round++) {
-      ours.push(exponential(n, calls))
+      ours.push(run(calls))
       if (program) theirs.push(runPeer(program, ['exponential', String(calls)]))
     }
     const time = median(ours.map(({ figure }) => figure))
@@ -54,7 +62,7 @@ function compareExponentials(): void {
     }
     if (python) {
       const scipy = runPeer(python, ['test/bench/peers/expm_scipy.py', String(n), '700'])
-      agree({ figure: 0, checksum: exponential(n, 700).checksum }, scipy, 1e-9)
+      agree({ figure: 0, checksum: run(700).checksum }, scipy, 1e-9)
       line += `   SciPy ${microseconds(scipy.figure)} us, SciPy / JavaScript ${(scipy.figure / time).toFixed(0)}`
     }
     console.log(line)
@@ -71,7 +79,7 @@ function microseconds(nanoseconds: number): string {
 
 function compareCohorts(): void {
   const patients = 4000
-  const few = 40
+  const few = 10
   console.log(
     `Cohort of ${patients}: three compartments and depot, 28 doses, 337 times, one thread; median of ${ROUNDS} rounds`
   )
