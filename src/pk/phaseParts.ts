@@ -17,6 +17,8 @@ const KEPT = 2048
 interface PhasedModel {
   readonly disposition: Disposition
   readonly phases: readonly Phase[]
+  /** Coefficients of the phases in the response to 1 mg in a compartment, as they are first asked for. */
+  readonly responses: Map<number, readonly number[]>
 }
 
 /** Each phase's part of the observed concentration over one piece, fastest phase first; the parts sum to it. */
@@ -138,7 +140,7 @@ function phasedModel(model: Model): PhasedModel | string {
         (i) => i !== model.observed && disposition.rates.between[i * disposition.rates.size + j] > 0
       )
     )
-  return beside.length > 0 ? enters(model, beside[0]) : { disposition, phases }
+  return beside.length > 0 ? enters(model, beside[0]) : { disposition, phases, responses: new Map() }
 }
 
 /** Why the parts are not defined where drug enters the disposition elsewhere than in the observed compartment. */
@@ -174,13 +176,15 @@ function partsAtStart(
 }
 
 /** The amounts in a disposition as parts of its phases: each compartment's contribution by its own response. */
-function takenApart({ disposition, phases }: PhasedModel, amounts: ReadonlyVector): number[] {
+function takenApart({ disposition, phases, responses }: PhasedModel, amounts: ReadonlyVector): number[] {
   const { model, rates, members } = disposition
   const parts = phases.map(() => 0)
   for (const j of members) {
     if (!(amounts[j] > 0)) continue
-    responseTo(model, rates, j).forEach(({ coefficient }, i) => {
-      parts[i] += (coefficient ?? 0) * amounts[j]
+    const response = responses.get(j) ?? responseTo(model, rates, j).map(({ coefficient }) => coefficient ?? 0)
+    responses.set(j, response)
+    response.forEach((coefficient, i) => {
+      parts[i] += coefficient * amounts[j]
     })
   }
   return parts

@@ -9,7 +9,7 @@ import { course } from './rowsOf'
 
 test('the parts of the phases sum to the concentration, in any study in which they are defined', () => {
   let defined = 0
-  for (let seed = 1501; seed <= 1560; seed++) {
+  for (let seed = 1501; seed <= 1530; seed++) {
     const random = new Random(seed)
     const { trajectory } = course(randomStudy(random))
     const parts = phaseParts(trajectory)
@@ -25,11 +25,11 @@ test('the parts of the phases sum to the concentration, in any study in which th
       expectWithin(sum, level, { absolute: 1e-11 * size + 1e-14 * top }, `seed ${seed}`)
     }
   }
-  expect(defined).toBeGreaterThan(40)
+  expect(defined).toBeGreaterThan(20)
 })
 
 test('phases and ends of distribution are finite and in their bounds, in any study', () => {
-  for (let seed = 1601; seed <= 1640; seed++) {
+  for (let seed = 1601; seed <= 1620; seed++) {
     const random = new Random(seed)
     const study = randomStudy(random)
     for (const { over, byPhases, readableFrom, readableTo, why } of distributionOver(course(study), undefined)) {
