@@ -1,5 +1,6 @@
 import { decaysInto } from './decays'
-import { type Kernel, kernelFor } from './kernels'
+import type { Kernel } from './kernel'
+import { kernelFor } from './kernels'
 import { NonnegativeForm } from './nonnegativeForm'
 import { NumericalFailure } from './numericalFailure'
 import { emptyOperator, type Functional, type Operator } from './operator'

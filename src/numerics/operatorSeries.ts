@@ -1,5 +1,5 @@
 import { decaysInto } from './decays'
-import type { Kernel } from './kernels'
+import type { Kernel } from './kernel'
 import type { NonnegativeForm } from './nonnegativeForm'
 import { strideOf } from './taylorPlan'
 
