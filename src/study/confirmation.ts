@@ -1,4 +1,5 @@
-import { INTEGRATION_WITNESS, type IntegrationTolerance, integrate, WORKING_TOLERANCE } from '../pk/integrate'
+import type { IntegrationTolerance } from '../pk/fluxTolerance'
+import { INTEGRATION_WITNESS, integrate, WORKING_TOLERANCE } from '../pk/integrate'
 import { isLinear } from '../pk/model'
 import { rowTimes } from '../pk/profileTimes'
 import { type Witness, witness } from '../pk/witness'
