@@ -5,7 +5,7 @@ import type { Segment } from './segment'
 import type { Trajectory } from './trajectory'
 
 /** What lies beyond an earlier course is looked at for when it comes near, not for its digits. */
-const CONTINUED_TOLERANCE: IntegrationTolerance = { relative: 1e-5, floor: 1e-2 }
+export const CONTINUED_TOLERANCE: IntegrationTolerance = { relative: 1e-5, floor: 1e-2 }
 
 /**
  * An integrated trajectory over segments that begin as an earlier one's: its pieces as they are, as far as nothing

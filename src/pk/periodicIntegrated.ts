@@ -38,8 +38,17 @@ export interface Stage {
   readonly goal: number
 }
 
+/** The stages of an iteration, each from where the one before came to; the last one's tolerance is that of the answer. */
+export type Accuracy = readonly [...Stage[], Stage]
+
 const ROUGH: Stage = { tolerance: { relative: 1e-6, floor: 1e-2 }, nudge: 1e-3, goal: 1e-4 }
 const FINE: Stage = { tolerance: PERIODIC_TOLERANCE, nudge: 1e-5, goal: 1e-9 }
+
+/** About 1e-9 / (1 - c), c the part of a small change that is still there a period later. */
+export const EXACTLY: Accuracy = [ROUGH, FINE]
+/** About 1e-5 / (1 - c): for curves that are drawn. */
+export const ROUGHLY: Accuracy = [{ ...ROUGH, goal: 1e-5 }]
+
 /** Corrections that no longer become smaller are good enough below this. */
 const NEARLY = 1e-6
 
@@ -56,14 +65,17 @@ const SLOW = 0.25
 
 /**
  * The state that comes back after a period of segments, of a model that is not linear: Newton's method on what one period
- * does to the amounts, with difference quotients that Broyden's update keeps up to date, first roughly, then at 1e-10;
- * from `guess` or from the constant state under the mean input. Relative accuracy about 1e-9 / (1 - c), c the part of a
- * small change that is still there a period later.
+ * does to the amounts, with difference quotients that Broyden's update keeps up to date; from `guess` or from the constant
+ * state under the mean input.
  *
  * Throws `NumericalFailure` 'no-convergence' where it is not found, `RosenbrockFailure` where a period cannot be integrated.
  * Whether there is such a state is not asked here: see `capacityOf`.
  */
-export function periodicIntegrated(segments: readonly Segment[], guess?: ReadonlyVector): PeriodicSolution {
+export function periodicIntegrated(
+  segments: readonly Segment[],
+  accuracy: Accuracy,
+  guess?: ReadonlyVector
+): PeriodicSolution {
   const map = new PeriodMap(segments)
   const { model } = segments[0]
   const baseline = drugFreeState(model)
@@ -71,8 +83,7 @@ export function periodicIntegrated(segments: readonly Segment[], guess?: Readonl
   const from = map.coordinates(guess ?? firstGuess(segments))
   // A period brings what enters once in it, and a depot with it, near where it is at the start of one.
   const iteration = new PeriodicIteration(map, guess === undefined ? map.after(from, ROUGH.tolerance) : from)
-  iteration.run(ROUGH)
-  iteration.run(FINE)
+  for (const stage of accuracy) iteration.run(stage)
   const amounts = map.amounts(iteration.coordinates)
   return { state: { amounts, effectSites: periodicSites(segments, amounts) }, convergence: iteration.convergence }
 }

@@ -96,7 +96,7 @@ function measured(
 }
 
 /** First position from which on every value is within `margin` of the goal. */
-function firstStaying(values: readonly number[], goal: number, margin: number): number | undefined {
+export function firstStaying(values: readonly number[], goal: number, margin: number): number | undefined {
   let first = values.length
   while (first > 0 && Math.abs(values[first - 1] - goal) <= margin) first -= 1
   return first < values.length ? first : undefined

@@ -16,13 +16,12 @@ import type { Segment } from './segment'
 import type { Session } from './sessions'
 import type { BodyState } from './state'
 import { constantSolution, periodicSolution } from './steadySolution'
-import type { Subject } from './subject'
 import { timeline } from './timeline'
 import { isBefore, sameTime } from './times'
 import type { Trajectory } from './trajectory'
 
 /** What repeats at the end of a regimen, over one period of its own time: from 0, at the first dose of what repeats. */
-export interface SteadyPeriod {
+export interface RepeatingPeriod {
   readonly kind: 'period'
   readonly period: Hours
   /** Elapsed time of the first dose of the lines that repeat (of the first session, where no line does). */
@@ -35,23 +34,34 @@ export interface SteadyPeriod {
   readonly endless: ReadonlyVector | undefined
   /** Sessions of one period, and those of earlier periods that still run in it. */
   readonly sessions: readonly Session[]
+  /** One of the periods that have always recurred, in segments. */
+  readonly segments: readonly Segment[]
+}
+
+/** A period with its steady state. */
+export interface SteadyPeriod extends RepeatingPeriod {
   /** The periodic state at the start of a period, before anything given at that time. */
   readonly state: BodyState
   /** One period at steady state. */
   readonly course: Trajectory
-  /** The period as segments, to start from `state`. */
-  readonly segments: readonly Segment[]
   /** How the iteration for the state ended; undefined for a linear model, whose state is solved for at once. */
   readonly convergence?: Convergence
 }
 
-/** An endless infusion alone: nothing changes any more. */
-export interface ConstantLevel {
+/** An endless infusion alone. */
+export interface ConstantInput {
   readonly kind: 'constant'
   readonly model: Model
   readonly endless: ReadonlyVector
+}
+
+/** Nothing changes any more. */
+export interface ConstantLevel extends ConstantInput {
   readonly course: Trajectory
 }
+
+/** What repeats at the end of a regimen, whether it has a steady state or not. */
+export type RepeatingOutcome = RepeatingPeriod | ConstantInput | { readonly kind: 'none'; readonly why: string }
 
 export type SteadyOutcome = SteadyPeriod | ConstantLevel | { readonly kind: 'none'; readonly why: string }
 
@@ -63,21 +73,35 @@ const CONSTANT_FOR: Hours = 24
  * infusion still running at the end as endless, and the person as at the end.
  */
 export function steadyPeriodOf(course: Course, request: CourseRequest): SteadyOutcome {
-  const { until, stretches } = request
-  const subject = subjectAt(stretches, until)
-  return solve(course, request, subject, request.store ?? new OperatorStore())
+  const store = request.store ?? new OperatorStore()
+  const repeating = repeatingAtEnd(course, request)
+  switch (repeating.kind) {
+    case 'none':
+      return repeating
+    case 'constant': {
+      const solution = constantSolution(repeating.model, repeating.endless, CONSTANT_FOR, store)
+      return solution.kind === 'none' ? solution : { ...repeating, course: solution.course }
+    }
+    case 'period': {
+      const solution = periodicSolution(repeating.segments, store)
+      if (solution.kind === 'none') return solution
+      const { state, course: once, convergence } = solution
+      return { ...repeating, state, course: once, ...(convergence !== undefined && { convergence }) }
+    }
+  }
 }
 
-function solve(course: Course, request: CourseRequest, subject: Subject, store: OperatorStore): SteadyOutcome {
-  const { until, prescription } = request
+/** What repeats at the end, exceptions and single doses left out, to the person as at the end. */
+export function repeatingAtEnd(course: Course, request: CourseRequest): RepeatingOutcome {
+  const { until, prescription, stretches } = request
+  const subject = subjectAt(stretches, until)
   const { model } = subject
   const lines = prescription.lines.flatMap((line, i) => (repeatsAtEnd(line, until) ? [i] : []))
   const sessionLines = request.sessions.filter((line) => repeatsAtEnd(line, until))
   const endless = endlessInputs(course, until, model)
   if (lines.length === 0 && endless === undefined) return { kind: 'none', why: 'no dose repeats at the end' }
   if (lines.length + sessionLines.length === 0 && endless !== undefined) {
-    const constant = constantSolution(model, endless, CONSTANT_FOR, store)
-    return constant.kind === 'none' ? constant : { kind: 'constant', model, endless, course: constant.course }
+    return { kind: 'constant', model, endless }
   }
   const repeating = lines.map((i) => prescription.lines[i])
   const common = commonPeriod(repeating.flatMap(spacingOf), sessionLines.flatMap(spacingOf))
@@ -106,15 +130,10 @@ function solve(course: Course, request: CourseRequest, subject: Subject, store: 
   })
   const doses = given.flatMap((each) => each.doses)
   const segments = periodicSegments({ model, period, doses, sessions, ...(endless !== undefined && { endless }) })
-  const solution = periodicSolution(segments, store)
-  if (solution.kind === 'none') return solution
-  const { state, course: once, convergence } = solution
   return {
-    ...{ kind: 'period', period, origin, lines, model, endless, segments, state },
+    ...{ kind: 'period', period, origin, lines, model, endless, segments },
     administrations: given,
-    sessions: sessions.flatMap((session) => [...earlier(session, period), session]),
-    course: once,
-    ...(convergence !== undefined && { convergence })
+    sessions: sessions.flatMap((session) => [...earlier(session, period), session])
   }
 }
 

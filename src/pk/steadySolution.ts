@@ -7,7 +7,7 @@ import { isLinear, type Model } from './model'
 import type { OperatorStore } from './operatorStore'
 import { compartmentWithoutExit, neverLeaves, reachedBy, transfersIn } from './pathways'
 import { constantState, periodicState } from './periodic'
-import { type Convergence, meanInputs, PERIODIC_TOLERANCE, periodicIntegrated } from './periodicIntegrated'
+import { type Convergence, EXACTLY, meanInputs, PERIODIC_TOLERANCE, periodicIntegrated } from './periodicIntegrated'
 import { propagate } from './propagate'
 import type { Segment } from './segment'
 import type { BodyState } from './state'
@@ -27,12 +27,8 @@ export type SteadySolution =
     }
   | { readonly kind: 'none'; readonly why: string }
 
-/** The steady state of one period's segments, repeated for ever. `guess` is where an iteration begins: amounts at the start. */
-export function periodicSolution(
-  segments: readonly Segment[],
-  store: OperatorStore,
-  guess?: ReadonlyVector
-): SteadySolution {
+/** The steady state of one period's segments, repeated for ever. */
+export function periodicSolution(segments: readonly Segment[], store: OperatorStore): SteadySolution {
   return orWhy(() => {
     if (methodFor(segments) === 'exact') {
       const state = periodicState(segments, store)
@@ -40,7 +36,7 @@ export function periodicSolution(
     }
     const impossible = noSteadyState(segments)
     if (impossible !== undefined) return { kind: 'none', why: impossible }
-    const { state, convergence } = periodicIntegrated(segments, guess)
+    const { state, convergence } = periodicIntegrated(segments, EXACTLY)
     return { kind: 'steady', state, convergence, course: integrate(segments, state, PERIODIC_TOLERANCE) }
   })
 }
@@ -104,7 +100,8 @@ function perDay(a: MilligramsPerHour, b: MilligramsPerHour): readonly [string, s
   }
 }
 
-function orWhy(solve: () => SteadySolution): SteadySolution {
+/** What solving gives, with a numerical failure in words. */
+export function orWhy(solve: () => SteadySolution): SteadySolution {
   try {
     return solve()
   } catch (failure) {
