@@ -9,7 +9,7 @@ import { Header } from './Header'
 import { IssueList } from './IssueList'
 import { Note } from './Note'
 import { PhasesCard } from './PhasesCard'
-import { DEMONSTRATION, shippedStudy } from './shippedStudies'
+import { firstStudy } from './shippedStudies'
 import type { StudyDesk } from './studyDesk'
 
 /** The one page: the note, the curve beside it, then exposure, phases and the table, over a caution that stays. */
@@ -17,9 +17,7 @@ export function App(props: { desk: StudyDesk }) {
   const desk = props.desk
   onMount(() => {
     acceptDrops(desk)
-    shippedStudy(DEMONSTRATION).then(desk.open, (failure: Error) =>
-      desk.refuse(`${DEMONSTRATION}.json`, failure.message)
-    )
+    firstStudy().then(desk.open, (failure: Error) => desk.refuse('The first study', failure.message))
   })
   createEffect(() => {
     document.title = desk.page() === undefined ? 'Phasewise' : `${desk.page()?.title} · Phasewise`

@@ -16,7 +16,7 @@ export function Grid(props: { grid: GridView }) {
 
 function GridTable(props: { grid: GridView; titled: boolean }) {
   return (
-    <section class="scroll" tabindex="0" aria-label={props.grid.title}>
+    <section class="scroll" tabindex="0" aria-label={`${props.grid.title}: table`}>
       <Show
         when={props.grid.rows.length > 0}
         fallback={
