@@ -6,7 +6,8 @@ import { type DecrementTimes, decrementTimes } from './decrement'
 import { type Disposition, dispositionOf } from './disposition'
 import { dispositionMoments } from './dispositionMoments'
 import { type InputRate, inputRates } from './inputRates'
-import type { Model } from './model'
+import { isLinear, type Model } from './model'
+import { phasesOfNonlinear } from './nonlinearPhases'
 import { type NumberOrReason, numbersOf, type Reasons, reasonsOf } from './reasons'
 
 /** One exponential of the disposition: of the concentration after a unit bolus into the observed compartment. */
@@ -68,7 +69,7 @@ export interface PhasesOfStretch extends StretchValues {
 }
 
 export interface PhasesRequest {
-  /** Of the stretch, without sessions. Linear. */
+  /** Of the stretch, without sessions. */
   readonly model: Model
   readonly from: Hours
   readonly to: Hours
@@ -86,9 +87,10 @@ const ROUNDING = 1e-13
 /** A phase rules that carries at least this much of the area. */
 export const RULING_SHARE = 0.1
 
-/** The phases of one stretch. Throws `RangeError` for a model that is not linear. */
+/** The phases of one stretch; of a model that is not linear, why it has none. */
 export function phasesOf(request: PhasesRequest): PhasesOfStretch {
   const { model, from, to, until } = request
+  if (!isLinear(model)) return phasesOfNonlinear(model, from, to)
   const disposition = dispositionOf(model)
   const { rates } = disposition
   const all = spectrum(rates)
