@@ -22,8 +22,6 @@ const GROWTH = 6
 const SHRINKAGE = 0.2
 /** What is left of a step whose error is not a number, whose matrix is singular or which went below zero. */
 const RETREAT = 0.25
-/** First step in units of (tolerances in the change)^(-1/6) times the time scale of the change. */
-const FIRST_STEP = 3
 
 export interface RosenbrockOptions {
   readonly tolerance: RosenbrockTolerance
@@ -48,6 +46,8 @@ export class Rosenbrock {
   readonly #nonnegative: readonly boolean[] | undefined
   readonly #budget: number
   readonly #absolute: Float64Array
+  /** Of the step tried last. */
+  #error = 0
 
   constructor(system: RosenbrockSystem, options: RosenbrockOptions) {
     const { tolerance, nonnegative, budget = BUDGET } = options
@@ -96,7 +96,9 @@ export class Rosenbrock {
       if (tried++ >= this.#budget) this.#fail('too-many-steps', `${this.#budget} steps are used up`, time, h, state)
       if (inARow >= REJECTIONS_IN_A_ROW || !(time + h > time)) this.#failAtStep(time, h, state)
       this.#tolerance.absoluteInto(state, h, this.#absolute)
-      const error = this.#try(state, h)
+      step.h = h
+      this.#try(state)
+      const error = this.#error
       if (!(error <= 1)) {
         // An infinite error stands for a step that was none.
         h *= error < Number.POSITIVE_INFINITY ? Math.max(SHRINKAGE, SAFETY * fifthRoot(1 / error)) : RETREAT
@@ -129,10 +131,11 @@ export class Rosenbrock {
     }
   }
 
-  /** Factor and solve for one step; its error in units of the tolerance, infinite where it is not to be used. */
-  #try(state: Float64Array, h: number): number {
+  /** Factor and solve for one step. Leaves its error in units of the tolerance, infinite where it is not to be used. */
+  #try(state: Float64Array): void {
     const step = this.#step
-    if (!step.factor(h)) return Number.POSITIVE_INFINITY
+    this.#error = Number.POSITIVE_INFINITY
+    if (!step.factor()) return
     step.take(state)
     const { next, error } = step
     const absolute = this.#absolute
@@ -142,15 +145,13 @@ export class Rosenbrock {
     let sum = 0
     for (let i = 0; i < n; i++) {
       const e = error[i]
-      if (nonnegative !== undefined && next[i] < -BELOW_ZERO * absolute[i] && nonnegative[i]) {
-        return Number.POSITIVE_INFINITY
-      }
+      if (nonnegative !== undefined && next[i] < -BELOW_ZERO * absolute[i] && nonnegative[i]) return
       if (e === 0) continue
       const scaled = e / (absolute[i] + relative * Math.max(Math.abs(state[i]), Math.abs(next[i])))
       sum += scaled * scaled
     }
     // A NaN anywhere is in the sum.
-    return sum < Number.POSITIVE_INFINITY ? Math.sqrt(sum / n) : Number.POSITIVE_INFINITY
+    if (sum < Number.POSITIVE_INFINITY) this.#error = Math.sqrt(sum / n)
   }
 
   /**
@@ -176,7 +177,7 @@ export class Rosenbrock {
     }
     const d1 = Math.sqrt(first / n)
     const d2 = Math.sqrt(second / n)
-    const step = (FIRST_STEP * pow(d2 / d1 / d1, 1 / 6) * d1) / d2
+    const step = (pow(d2 / d1 / d1, 1 / 6) * d1) / d2
     return step > 0 && step < duration ? step : duration
   }
 

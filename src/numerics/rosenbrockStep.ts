@@ -15,13 +15,15 @@ const [[H11, H12, H13, H14, H15, H16, H17, H18], [H21, H22, H23, H24, H25, H26, 
 const [H31, H32, H33, H34, H35, H36, H37, H38] = THIRD
 
 /**
- * One step of Rodas5P (METHODS 2). `prepare` evaluates f and J at the state, `factor` takes the step's length, `take` solves
+ * One step of Rodas5P (METHODS 2). `prepare` evaluates f and J at the state, `factor` is for a length `h`, `take` solves
  * the stages; a step that is thrown away begins again at `factor`. Owns its scratch; nothing is allocated after the
  * constructor.
  */
 export class RosenbrockStep {
   readonly system: RosenbrockSystem
   readonly counts: RosenbrockCounts = { steps: 0, rejections: 0, factorisations: 0, derivatives: 0, jacobians: 0 }
+  /** Length of the step to be factored for. A field, since numbers handed from call to call may be put on the heap. */
+  h = 0
   /** State after the step, and the estimated error of each of its entries. */
   readonly next: Float64Array
   readonly error: Float64Array
@@ -73,10 +75,10 @@ export class RosenbrockStep {
     this.counts.jacobians += 1
   }
 
-  /** Factor I - gamma h J; false where it is singular, and the step must be shorter. */
-  factor(h: number): boolean {
+  /** Factor I - gamma h J for a step of length `h`; false where it is singular, and the step must be shorter. */
+  factor(): boolean {
     const { size, coupled } = this.system
-    const scaled = G * h
+    const scaled = G * this.h
     const matrix = this.#matrix
     const jacobian = this.jacobian
     this.#scaled = scaled

@@ -1,19 +1,12 @@
 import type { RosenbrockSystem } from '../numerics/rosenbrockSystem'
 import type { ReadonlyVector } from '../numerics/vector'
-import { bound, type Equilibrium, equilibriaOf, free } from './fluxEquilibrium'
-import { areaState, effectSiteState, eliminatedState, type FluxLayout, fluxLayout } from './fluxLayout'
+import { bound, chainTotals, type Equilibrium, equilibriaOf, free } from './fluxEquilibrium'
+import { netFlows } from './fluxFlows'
+import { eliminatedState, type FluxLayout, fluxLayout } from './fluxLayout'
+import { readings } from './fluxReadings'
 import { saturableRate, saturableSlope } from './fluxSaturable'
 import { volumeOf } from './linearRates'
-import { type Model, observedVolume } from './model'
-
-/** Two first-order arrows between the same places, as one net flow; `to` is where it is counted, -1 for nowhere. */
-interface Flow {
-  readonly from: number
-  readonly to: number
-  readonly there: number
-  /** Rate of the arrow back; 0 where there is none. */
-  back: number
-}
+import type { Model } from './model'
 
 /**
  * What a model does to its state: right side and analytic Jacobian of its amounts, effect sites, areas and eliminated
@@ -58,7 +51,7 @@ export class Flux implements RosenbrockSystem {
   /** Free amounts, where bindings are approximated. */
   readonly #amounts: Float64Array
 
-  /** Throws `RangeError` for a model that is none: a missing volume, a rate that is not positive and finite. */
+  /** Throws `RangeError` where a volume is missing or two approximated bindings share a compartment. */
   constructor(model: Model) {
     const layout = fluxLayout(model)
     const { size, compartments } = layout
@@ -74,20 +67,10 @@ export class Flux implements RosenbrockSystem {
       if (to !== 'eliminated') return to
       return model.compartments[from].holds === 'drug' ? eliminatedState(layout) : -1
     }
-    const flows = new Map<string, Flow>()
     for (const transfer of model.transfers) {
       if (transfer.kind === 'production') this.#production[transfer.into] += transfer.rate
-      if (transfer.kind !== 'first-order') continue
-      const { from, rate } = transfer
-      const to = counted(from, transfer.to)
-      const opposite = flows.get(`${to} ${from}`)
-      if (opposite !== undefined && transfer.to !== 'eliminated') opposite.back += rate
-      else {
-        const same = flows.get(`${from} ${to}`)
-        flows.set(`${from} ${to}`, { from, to, there: (same?.there ?? 0) + rate, back: same?.back ?? 0 })
-      }
     }
-    const list = [...flows.values()]
+    const list = netFlows(model, counted)
     this.#from = Int32Array.from(list, (flow) => flow.from)
     this.#to = Int32Array.from(list, (flow) => flow.to)
     this.#there = Float64Array.from(list, (flow) => flow.there)
@@ -188,7 +171,7 @@ export class Flux implements RosenbrockSystem {
       out[complex * size + drug] += byDrug
       out[complex * size + target] += byTarget
     }
-    for (const equilibrium of this.equilibria) this.#toTotals(equilibrium, x, out)
+    for (const equilibrium of this.equilibria) chainTotals(equilibrium, x, size, out)
   }
 
   /** Write the amounts in the compartments of a state: free and bound apart. */
@@ -228,28 +211,6 @@ export class Flux implements RosenbrockSystem {
     return this.#amounts
   }
 
-  /** Chain rule: columns by the totals instead of the amounts, rows of the totals instead of the amounts. */
-  #toTotals(equilibrium: Equilibrium, x: ReadonlyVector, out: Float64Array): void {
-    const { drug, target, complex, constant } = equilibrium
-    const size = this.size
-    const sum = constant + x[drug] + x[target]
-    const byDrug = x[target] / sum
-    const byTarget = x[drug] / sum
-    for (let row = 0; row < size * size; row += size) {
-      const ofDrug = out[row + drug]
-      const ofTarget = out[row + target]
-      const ofComplex = out[row + complex]
-      out[row + drug] = ofDrug * (1 - byDrug) + (ofComplex - ofTarget) * byDrug
-      out[row + target] = ofTarget * (1 - byTarget) + (ofComplex - ofDrug) * byTarget
-      out[row + complex] = 0
-    }
-    for (let j = 0; j < size; j++) {
-      out[drug * size + j] += out[complex * size + j]
-      out[target * size + j] += out[complex * size + j]
-      out[complex * size + j] = 0
-    }
-  }
-
   #linearJacobian(): Float64Array {
     const size = this.size
     const jacobian = new Float64Array(size * size)
@@ -274,33 +235,4 @@ export class Flux implements RosenbrockSystem {
     for (let p = 0; p < this.#rows.length; p++) add(this.#rows[p], this.#sources[p], this.#weights[p])
     return jacobian
   }
-}
-
-interface Reading {
-  readonly row: number
-  readonly source: number
-  readonly weight: number
-}
-
-/** Effect sites ke0 (A / V - C), and the areas under every signal, as weights on states. */
-function readings(model: Model, layout: FluxLayout): Reading[] {
-  const sites = model.effectSites.flatMap(({ source, rate }, index): Reading[] => {
-    const row = effectSiteState(layout, index)
-    return [
-      { row, source, weight: rate / volumeOf(model, source) },
-      { row, source: row, weight: -rate },
-      { row: areaState(layout, { kind: 'effect-site', index }), source: row, weight: 1 }
-    ]
-  })
-  const observations = model.observations.flatMap(({ of, volume }, index) =>
-    of.map(
-      (source): Reading => ({ row: areaState(layout, { kind: 'observation', index }), source, weight: 1 / volume })
-    )
-  )
-  const observed = {
-    row: areaState(layout, { kind: 'observed' }),
-    source: model.observed,
-    weight: 1 / observedVolume(model)
-  }
-  return [...sites, observed, ...observations]
 }

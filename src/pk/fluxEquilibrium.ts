@@ -1,3 +1,4 @@
+import type { ReadonlyVector } from '../numerics/vector'
 import type { Milligrams } from '../units/canonical'
 import { volumeOf } from './linearRates'
 import type { Binding, Model } from './model'
@@ -59,4 +60,28 @@ export function free(own: Milligrams, other: Milligrams, constant: Milligrams): 
   const excess = own - other - constant
   const root = Math.sqrt((own - other) * (own - other) + constant * (constant + 2 * (own + other)))
   return excess >= 0 ? 0.5 * (excess + root) : (2 * constant * own) / (root - excess)
+}
+
+/**
+ * Turn a Jacobian by the amounts into one by the totals, at free amounts x, in place: columns by the chain rule, the rows of
+ * drug and target each with that of the complex added, which itself becomes nothing.
+ */
+export function chainTotals(equilibrium: Equilibrium, x: ReadonlyVector, size: number, jacobian: Float64Array): void {
+  const { drug, target, complex, constant } = equilibrium
+  const sum = constant + x[drug] + x[target]
+  const byDrug = x[target] / sum
+  const byTarget = x[drug] / sum
+  for (let row = 0; row < size * size; row += size) {
+    const ofDrug = jacobian[row + drug]
+    const ofTarget = jacobian[row + target]
+    const ofComplex = jacobian[row + complex]
+    jacobian[row + drug] = ofDrug * (1 - byDrug) + (ofComplex - ofTarget) * byDrug
+    jacobian[row + target] = ofTarget * (1 - byTarget) + (ofComplex - ofDrug) * byTarget
+    jacobian[row + complex] = 0
+  }
+  for (let j = 0; j < size; j++) {
+    jacobian[drug * size + j] += jacobian[complex * size + j]
+    jacobian[target * size + j] += jacobian[complex * size + j]
+    jacobian[complex * size + j] = 0
+  }
 }

@@ -9,13 +9,9 @@ import { observedVolume } from './model'
 export interface IntegrationTolerance {
   /** Of every amount and area, a step; what is achieved may be ten to twenty times that. Above 1e-4 counts as 1e-4. */
   readonly relative: number
+  /** What is smaller than this part of the largest amount there has been keeps fewer digits than `relative` says. */
+  readonly floor: number
 }
-
-/**
- * The absolute tolerance of an amount, in units of relative tolerance x the largest amount so far. A thousandth is
- * usual; a millionth costs a twentieth more steps and leaves a trough at a millionth of the peak its digits.
- */
-const FLOOR = 1e-6
 
 /** The largest amounts met so far on one course: of drug in the body, and of targets. */
 export interface LargestAmounts {
@@ -25,7 +21,7 @@ export interface LargestAmounts {
 
 /**
  * Absolute tolerances that go with the amounts there are, so that no unit of mass is better than another: for drug and for
- * targets a millionth of the relative tolerance times the largest amount so far, what enters during the step included;
+ * targets relative tolerance x floor x the largest amount so far, what enters during the step included;
  * for concentrations that over the volume; for an area what that concentration amounts to over the step.
  */
 export class FluxTolerance implements RosenbrockTolerance {
@@ -41,8 +37,10 @@ export class FluxTolerance implements RosenbrockTolerance {
 
   /** `largest` is shared by all models of one course. */
   constructor(tolerance: IntegrationTolerance, flux: Flux, largest: LargestAmounts) {
-    this.relative = tolerance.relative
-    this.#part = tolerance.relative * FLOOR
+    const { relative, floor } = tolerance
+    if (!(floor > 0 && floor <= 1)) throw new RangeError(`the floor is a part of the largest amount, got ${floor}`)
+    this.relative = relative
+    this.#part = relative * floor
     this.#flux = flux
     this.#largest = largest
     this.#isDrug = flux.model.compartments.map(({ holds }) => holds === 'drug')

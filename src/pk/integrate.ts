@@ -11,11 +11,11 @@ import type { Segment } from './segment'
 import type { BodyState } from './state'
 import type { Trajectory } from './trajectory'
 
-/** What results are computed with where nothing else is said. */
-export const WORKING_TOLERANCE: IntegrationTolerance = { relative: 1e-8 }
+/** What results are computed with where nothing else is said: a trough of a ten-thousandth of the peak has its digits. */
+export const WORKING_TOLERANCE: IntegrationTolerance = { relative: 1e-8, floor: 1e-4 }
 
 /** What a linear model's exact course is compared with. */
-export const INTEGRATION_WITNESS: IntegrationTolerance = { relative: 1e-11 }
+export const INTEGRATION_WITNESS: IntegrationTolerance = { relative: 1e-11, floor: 1e-6 }
 
 /**
  * The course of any model over gapless segments, from a state before the first one's boluses, by the Rosenbrock method
