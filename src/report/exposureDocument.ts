@@ -1,7 +1,9 @@
 import type { RegimenExposure } from '../pk/exposure'
 import type { When } from '../pk/target'
 import type { TargetResult } from '../pk/targetMet'
+import { nonlinearViews } from '../study/nonlinear'
 import type { RegimenResult, StudyResult } from '../study/result'
+import { nonlinearDocument } from './nonlinearDocument'
 import { withReasons } from './undefinedValues'
 
 /** The names of one dosing interval's values, with their units. */
@@ -59,9 +61,17 @@ export const REGIMEN_NAMES = {
   aucNext24: 'aucNext24_mg_h_L'
 } as const
 
+const RUNNING_AND_REGIMEN_NAMES = { ...REGIMEN_NAMES, highestRunningAuc24: 'highestRunningAuc24' } as const
+
 /** `exposure --json`: per regimen its intervals, days, steady state and targets, with a reason for every `null`. */
 export function exposureDocument(result: StudyResult): object {
-  return { regimens: result.regimens.map(regimenDocument) }
+  const views = nonlinearViews(result)
+  return {
+    regimens: result.regimens.map((regimen, i) => ({
+      ...regimenDocument(regimen),
+      nonlinear: nonlinearDocument(views[i])
+    }))
+  }
 }
 
 function regimenDocument(regimen: RegimenResult): object {
@@ -76,17 +86,15 @@ function regimenDocument(regimen: RegimenResult): object {
     })),
     days: exposure.days.map((day) => ({ day: day.day, ...withReasons(day, DAY_NAMES) })),
     steadyState: withReasons(exposure.steadyState, STEADY_STATE_NAMES),
-    ...withReasons(exposure, REGIMEN_NAMES),
-    highestRunningAuc24: runningDocument(exposure),
+    ...withReasons({ ...exposure, highestRunningAuc24: runningDocument(exposure) }, RUNNING_AND_REGIMEN_NAMES),
     targets: exposure.targets.map(targetDocument),
     overLimits: regimen.overLimits,
     notes: regimen.notes
   }
 }
 
-function runningDocument(exposure: RegimenExposure): object | null {
-  const running = exposure.highestRunningAuc24
-  return running === undefined ? null : { auc_mg_h_L: running.auc, from_h: running.from }
+function runningDocument({ highestRunningAuc24: running }: RegimenExposure): object | undefined {
+  return running === undefined ? undefined : { auc_mg_h_L: running.auc, from_h: running.from }
 }
 
 function targetDocument(result: TargetResult): object {

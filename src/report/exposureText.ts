@@ -1,7 +1,9 @@
+import { nonlinearViews } from '../study/nonlinear'
 import type { RegimenResult, StudyResult } from '../study/result'
 import { CAUTION } from './caution'
 import { STEADY_STATE_NAMES, whenWord } from './exposureDocument'
 import { nameAndUnit } from './longTable'
+import { nonlinearText } from './nonlinearText'
 import { alignedRows, plainNumber, plainPercent } from './plainText'
 
 type SteadyStateName = keyof typeof STEADY_STATE_NAMES
@@ -37,7 +39,10 @@ const SHARES: ReadonlySet<SteadyStateName> = new Set(['timeInWindow', 'timeAbove
 /** The exposure as it is read on a terminal: three significant figures, a reason for each dash. */
 export function exposureText(result: StudyResult): string {
   const lines = [result.study.title, '']
-  for (const regimen of result.regimens) lines.push(...regimenText(regimen), '')
+  const views = nonlinearViews(result)
+  result.regimens.forEach((regimen, i) => {
+    lines.push(...regimenText(regimen), ...nonlinearText(views[i]), '')
+  })
   lines.push(...result.cautions.map((caution) => `Caution: ${caution}.`), CAUTION)
   return `${lines.join('\n')}\n`
 }
@@ -102,6 +107,10 @@ function steadyStateText(regimen: RegimenResult): string[] {
       why: value === undefined ? steadyState.why[name] : undefined
     }
   })
+  const reasons = new Set(rows.map(({ why }) => why))
+  const [only] = reasons
+  // One reason for everything is said once.
+  if (reasons.size === 1 && only !== undefined) return [only]
   return alignedRows(rows.map((row) => row.cells)).map((line, i) => {
     const why = rows[i]?.why
     return why === undefined ? line : `${line}  ${why}`

@@ -1,15 +1,31 @@
 import type { Finding } from '../patient/findings'
 import type { Course } from '../pk/course'
 import type { DoseOverLimit } from '../pk/doseLimits'
+import type { RegimenExposure } from '../pk/exposure'
+import { repeatsAtEnd } from '../pk/repeating'
+import type { Hours } from '../units/canonical'
 import type { Study, StudyRegimen } from './study'
 
-/** What must be said of a regimen before its numbers are used: doses over a limit, doses during a session. */
-export function regimenCautions(
-  regimen: StudyRegimen,
-  course: Course,
-  overLimits: readonly DoseOverLimit[]
-): readonly string[] {
+export interface CautionedRegimen {
+  readonly regimen: StudyRegimen
+  readonly course: Course
+  readonly exposure: RegimenExposure
+  readonly overLimits: readonly DoseOverLimit[]
+  readonly until: Hours
+}
+
+/**
+ * What must be said of a regimen before its numbers are used: doses over a limit, doses during a session, a dose rate that
+ * has no steady state.
+ */
+export function regimenCautions(given: CautionedRegimen): readonly string[] {
+  const { regimen, course, exposure, overLimits } = given
   const cautions: string[] = []
+  const { average, why } = exposure.steadyState
+  if (course.method === 'integrated' && average === undefined && why.average !== undefined) {
+    const repeats = regimen.lines.some((line) => repeatsAtEnd(line, given.until))
+    if (repeats) cautions.push(`${regimen.name}: ${why.average}`)
+  }
   for (const over of overLimits) {
     if (regimen.reasons[over.line] !== undefined) continue
     cautions.push(

@@ -2,7 +2,7 @@ import type { Finding } from '../patient/findings'
 import type { Individual } from '../patient/individual'
 import type { Person } from '../patient/person'
 import type { Question } from '../patient/plausibility'
-import type { Course } from '../pk/course'
+import type { Course, CourseRequest } from '../pk/course'
 import type { DistributionOver } from '../pk/distribution'
 import type { DoseOverLimit } from '../pk/doseLimits'
 import type { RegimenExposure } from '../pk/exposure'
@@ -16,7 +16,7 @@ export interface StudyResult {
   /** The individual over each stretch between patient changes, the first from 0. */
   readonly stretches: readonly IndividualStretch[]
   readonly regimens: readonly RegimenResult[]
-  /** One block a stretch, sessions off; empty for a model that is not linear. */
+  /** One block a stretch, sessions off; for a model that is not linear it says why there are no phases. */
   readonly phases: readonly PhasesOfStretch[]
   /** Per covariate: inside, outside, not known; unstable creatinine and the like. */
   readonly findings: readonly Finding[]
@@ -34,6 +34,8 @@ export interface IndividualStretch {
 
 export interface RegimenResult {
   readonly name: string
+  /** What the course was made from; further questions about the regimen start here. */
+  readonly request: CourseRequest
   readonly course: Course
   readonly exposure: RegimenExposure
   readonly distribution: readonly DistributionOver[]

@@ -6,7 +6,6 @@ import { distributionOver } from '../pk/distribution'
 import { dosesOverLimits } from '../pk/doseLimits'
 import { exposureOf } from '../pk/exposure'
 import type { Issue } from '../pk/issue'
-import { isLinear } from '../pk/model'
 import { OperatorStore } from '../pk/operatorStore'
 import { type PhasesOfStretch, phasesOf } from '../pk/phases'
 import { tooManyRows } from '../pk/profileTimes'
@@ -57,20 +56,22 @@ export function runStudy(study: Study): StudyOutcome {
     const { course } = outcome
     const infusionRoutes = study.drugModel.routes.filter(({ input }) => input === 'infusion').map(({ name }) => name)
     const overLimits = dosesOverLimits(course, study.drugModel.drug.limits, infusionRoutes)
+    const exposure = exposureOf({
+      course,
+      request,
+      targets: study.targets,
+      ...(study.now === undefined ? {} : { now: study.now })
+    })
     regimens.push({
       name: regimen.name,
+      request,
       course,
-      exposure: exposureOf({
-        course,
-        request,
-        targets: study.targets,
-        ...(study.now === undefined ? {} : { now: study.now })
-      }),
+      exposure,
       distribution: distributionOver(course, study.drugModel.drug.sampleAfter),
       overLimits,
       notes: course.notes
     })
-    cautions.push(...regimenCautions(regimen, course, overLimits))
+    cautions.push(...regimenCautions({ regimen, course, exposure, overLimits, until: study.sampling.until }))
   })
   if (issues.length > 0) return { ok: false, issues }
 
@@ -117,7 +118,7 @@ function weightWords(study: Study): readonly WeightDescriptor[] {
   return study.regimens.flatMap(({ lines }) => lines.flatMap(({ by }) => by ?? []))
 }
 
-/** The phases of every stretch of a linear model, with the periods and infusion lengths of all regimens. */
+/** The phases of every stretch, or why there are none, with the periods and infusion lengths of all regimens. */
 function stretchPhases(
   study: Study,
   stretches: readonly IndividualStretch[],
@@ -129,7 +130,7 @@ function stretchPhases(
   const infusions = given.map(({ duration }) => duration).filter((duration) => duration > 0)
   return stretches.flatMap(({ from, individual }, i) => {
     const { model } = individual.subject
-    if (!isLinear(model) || from >= until) return []
+    if (from >= until) return []
     return phasesOf({
       model,
       from,
