@@ -72,6 +72,24 @@ describe('two compartments, 750 mg over 1 h', () => {
     expect([auc24, peak, trough]).toEqual([plain.auc24, plain.peak, plain.trough])
   })
 
+  // R comes from areas at steady state and of the first period, the half-life from what earlier periods leave in this one.
+  test.each([
+    [0.5, 0],
+    [8, 6],
+    [30, 0],
+    [3, 17]
+  ])('an infusion of %s h with a lag of %s h every 12 h: what is carried over is R - 1 parts of R', (over, lag) => {
+    const late = subjectOf(mammillary(disposition), 0, { lag })
+    const { steadyState } = exposureFor(late, [line(750, { over, every: hours(12) })], 100)
+    const ratio = steadyState.accumulationRatio
+    if (lag >= 12) {
+      expect(steadyState.why.accumulationRatio).toMatch(/^nothing has entered/)
+      return
+    }
+    const expected = (12 * Math.LN2) / Math.log(number(ratio, 'ratio') / (number(ratio, 'ratio') - 1))
+    expectWithin(number(steadyState.effectiveHalfLife, steadyState.why.effectiveHalfLife), expected, exact)
+  })
+
   test('oral: the operational half-life by sums of exponentials', () => {
     const model = mammillary(disposition)
     const oral = {
