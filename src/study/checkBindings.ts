@@ -36,6 +36,7 @@ export function checkBindings(file: ModelFile, path: string, names: ModelNames):
     }
   }
   checkDoses(file, path, targets, names)
+  checkObservations(file, path, bindings, names)
   const turnover = checkMovements(file, path, targets, names)
   if (problems.isSound(below(path, 'transfers'))) checkTurnover(bindings, turnover, names)
 }
@@ -95,6 +96,19 @@ function checkDoses(file: ModelFile, path: string, targets: ReadonlySet<string>,
   for (const [at, route] of open(file.routes, below(path, 'routes'), problems)) {
     check(route.into, at)
     for (const [i, part] of (route.parts ?? []).entries()) check(part.into, below(below(at, 'parts'), i))
+  }
+}
+
+/** An observation adds up drug, free and bound, or target, free and bound, and not the one to the other. */
+function checkObservations(file: ModelFile, path: string, bindings: Bindings, { problems }: ModelNames): void {
+  for (const [at, { of }] of open(file.observations, below(path, 'observations'), problems)) {
+    const target = of.find((id) => bindings.some(([, binding]) => binding.target === id))
+    const drug = of.find((id) => !bindings.some(([, binding]) => binding.target === id || binding.complex === id))
+    if (target === undefined || drug === undefined) continue
+    problems.add(
+      below(at, 'of'),
+      `"${target}" is a binding target and "${drug}" holds drug; they are not one substance`
+    )
   }
 }
 

@@ -8,7 +8,7 @@ export function shippedModel(id: string): unknown {
   return /^[a-z0-9-]+$/.test(id) && ids.has(id) ? model(id) : undefined
 }
 
-const ids = new Set(['pw-101', 'pw-102', 'pw-103', 'pw-104', 'pw-105', 'pw-106', 'pw-107', 'pw-108'])
+const ids = new Set(Array.from({ length: 12 }, (_, i) => `pw-${101 + i}`))
 
 /** A fresh copy of a shipped model. */
 export function model(id: string): Json {

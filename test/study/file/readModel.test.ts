@@ -229,6 +229,12 @@ const refused: readonly (readonly [string, () => Json, string, RegExp])[] = [
     /production is of a binding's target, and "central" is none/
   ],
   [
+    'an observation that adds target to free drug',
+    () => put(binding(), 'observations', [{ id: 'all', of: ['central', 'receptor'] }]),
+    'observations[0].of',
+    /"receptor" is a binding target and "central" holds drug/
+  ],
+  [
     'a transfer from a complex to its target, which would lose the drug',
     () => put(binding(), 'transfers[6]', { kind: 'first-order', from: 'complex', to: 'receptor', rate: 'kdeg' }),
     'transfers[6]',
