@@ -117,6 +117,16 @@ describe.each(STUDIES)('%s', (name) => {
   })
 })
 
+test('a study shorter than 24 h has no highest running AUC24, and its document says why', () => {
+  const study = JSON.parse(readFileSync(STUDY, 'utf8'))
+  study.sampling.until = { value: 20, unit: 'h' }
+  const { status, out } = phasewise(['exposure', '-', '--json'], JSON.stringify(study))
+  expect(status).toBe(0)
+  const [regimen] = JSON.parse(out).regimens
+  expect(regimen.highestRunningAuc24).toBeNull()
+  expect(regimen.why.highestRunningAuc24).toBe('the study is shorter than 24 h')
+})
+
 describe('files', () => {
   test.each(['exposure', 'phases'])('%s --out writes one value a row, with its unit, and the metadata', (verb) => {
     const file = join(folder, `${verb}.csv`)
