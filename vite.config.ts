@@ -45,6 +45,7 @@ export default defineConfig({
     emptyOutDir: true,
     target: 'es2022',
     assetsInlineLimit: 0,
-    modulePreload: { polyfill: false }
+    modulePreload: { polyfill: false },
+    rolldownOptions: { checks: { pluginTimings: false } }
   }
 })

@@ -1,4 +1,4 @@
-import { createEffect, createResource, createSignal, For, on } from 'solid-js'
+import { createEffect, createResource, createSignal, For, Index, on } from 'solid-js'
 import type { TableView } from '../report/page/page'
 import { DownloadButton } from './DownloadButton'
 import { RegimenTag } from './RegimenTag'
@@ -66,15 +66,15 @@ export function ConcentrationTable(props: { desk: StudyDesk; table: TableView })
             </tr>
           </thead>
           <tbody>
-            <For each={shown()}>
+            <Index each={shown()}>
               {(row) => (
                 <tr>
-                  <For each={row}>
-                    {(cell, k) => <td classList={{ words: !props.table.columns[k()]?.numeric }}>{cell}</td>}
-                  </For>
+                  <Index each={row()}>
+                    {(cell, k) => <td classList={{ words: !props.table.columns[k]?.numeric }}>{cell()}</td>}
+                  </Index>
                 </tr>
               )}
-            </For>
+            </Index>
           </tbody>
         </table>
       </section>
