@@ -1,7 +1,10 @@
 import { readdirSync, readFileSync } from 'node:fs'
 import { describe, expect, test } from 'vitest'
+import type { ReadonlyVector } from '../src/numerics/vector'
 import type { DrugModel } from '../src/patient/drugModel'
 import { areaBetween, valueAt } from '../src/pk/curve'
+import { INTEGRATION_WITNESS, integrate } from '../src/pk/integrate'
+import { isLinear, type Model } from '../src/pk/model'
 import type { Trajectory } from '../src/pk/trajectory'
 import { checkModel } from '../src/study/checkedModel'
 import { readModel } from '../src/study/file/readModel'
@@ -19,8 +22,11 @@ const published = models.filter(({ drugModel }) => drugModel.source.kind === 'pu
 /** Recomputed in 40-digit arithmetic from the files alone by test/reference/models/recompute.py. */
 const courses: { readonly cases: readonly ModelCourses[] } = JSON.parse(textOf('./reference/models/courses.json'))
 
+/** By two general-purpose solvers that agree to 2e-11, from the files alone: test/reference/models/nonlinear.py. */
+const nonlinear: { readonly cases: readonly ModelCourses[] } = JSON.parse(textOf('./reference/models/nonlinear.json'))
+
 interface ModelCourses {
-  readonly study: { readonly model: string }
+  readonly study: { readonly model: string; readonly title: string }
   readonly expected: readonly { readonly regimen: string; readonly rows: readonly ExpectedRow[] }[]
 }
 
@@ -57,8 +63,28 @@ describe('every model file', () => {
   })
 
   test('every model has a reference course', () => {
-    expect(courses.cases.map(({ study }) => study.model).sort()).toEqual(models.map(({ id }) => id).sort())
+    const linear = courses.cases.map(({ study }) => study.model)
+    const others = nonlinear.cases.map(({ study }) => study.model)
+    expect([...new Set([...linear, ...others])].sort()).toEqual(models.map(({ id }) => id).sort())
+    for (const model of others) expect(linear).not.toContain(model)
   })
+
+  test.each(nonlinear.cases)(
+    '$study.title: within 1e-7 of two independent solvers as computed, within 1e-10 at a tight tolerance',
+    ({ study, expected }) => {
+      const { regimens } = resultOf(JSON.stringify(study))
+      expect(regimens.map(({ name }) => name)).toEqual(expected.map(({ regimen }) => regimen))
+      regimens.forEach(({ course }, i) => {
+        expect(course.method).toBe('integrated')
+        const tight = integrate(course.segments, course.initial, INTEGRATION_WITNESS)
+        for (const row of expected[i].rows) {
+          expectRow(course.trajectory, row, 1e-7)
+          expectRow(tight, row, 1e-10)
+        }
+        expectSound(course.trajectory)
+      })
+    }
+  )
 
   test.each(courses.cases)('$study.model agrees with 40-digit arithmetic on every route', ({ study, expected }) => {
     const { regimens } = resultOf(JSON.stringify(study))
@@ -71,19 +97,22 @@ describe('every model file', () => {
 })
 
 describe('the invented drugs', () => {
-  test('are PW-101 to PW-108', () => {
-    expect(invented.map(({ id }) => id)).toEqual([1, 2, 3, 4, 5, 6, 7, 8].map((n) => `pw-10${n}`))
+  test('are PW-101 to PW-112', () => {
+    expect(invented.map(({ id }) => id)).toEqual(Array.from({ length: 12 }, (_, i) => `pw-${101 + i}`))
   })
 
-  test('use every linear transfer, exchange by clearance and by rates', () => {
+  test('use every transfer, exchange by clearance and by rates, a Hill exponent, binding in full and approximated', () => {
     const used = invented.flatMap(({ drugModel }) =>
       drugModel.transfers.map((transfer) =>
         transfer.kind === 'exchange' && 'rates' in transfer ? 'exchange by rates' : transfer.kind
       )
     )
-    expect(new Set(used)).toEqual(
-      new Set(['first-order', 'exchange', 'exchange by rates', 'clearance', 'elimination', 'transit', 'effect'])
-    )
+    const kinds = ['first-order', 'exchange', 'exchange by rates', 'clearance', 'elimination', 'transit', 'effect']
+    expect(new Set(used)).toEqual(new Set([...kinds, 'saturable', 'binding', 'production']))
+    const transfers = invented.flatMap(({ drugModel }) => drugModel.transfers)
+    expect(transfers.some((transfer) => transfer.kind === 'saturable' && transfer.hill !== undefined)).toBe(true)
+    const bindings = transfers.flatMap((transfer) => (transfer.kind === 'binding' ? [transfer.approximation] : []))
+    expect(new Set(bindings)).toEqual(new Set(['none', 'quasi-steady-state']))
   })
 
   test('use every kind of factor', () => {
@@ -121,6 +150,128 @@ describe('the invented drugs', () => {
     expect(files.every(({ correlations }) => correlations !== undefined)).toBe(true)
   })
 })
+
+describe('the antibody PW-111 and its approximation PW-112', () => {
+  const patient = { weight: { value: 75, unit: 'kg' } }
+  const curves = ['pw-111', 'pw-112'].map((model) => {
+    const dose = { route: 'subcutaneous', amount: { value: 150, unit: 'mg' }, at: { value: 0, unit: 'd' } }
+    const text = JSON.stringify({
+      format: 'phasewise-study',
+      version: 1,
+      title: 'one dose',
+      model,
+      patient,
+      regimens: [{ name: 'once', doses: [dose] }],
+      sampling: { until: { value: 42, unit: 'd' }, every: { value: 1, unit: 'd' } }
+    })
+    return resultOf(text).regimens[0].course.trajectory
+  })
+  const [full, approximated] = curves
+
+  test('are the same numbers but for the approximation', () => {
+    const [one, two] = ['pw-111', 'pw-112'].map((id) => {
+      const { parameters, compartments, transfers, routes, observations } = fileOf(id)
+      const other = transfers.map((transfer) =>
+        transfer.kind === 'binding' ? { ...transfer, approximation: undefined } : transfer
+      )
+      return { parameters, compartments, transfers: other, routes, observations }
+    })
+    expect(one).toEqual(two)
+  })
+
+  test('carry target and complex in drug-equivalent mass in the volume of the drug', () => {
+    const { model } = full.pieces[0].segment
+    const place = (name: string): number => model.compartments.findIndex((compartment) => compartment.name === name)
+    expect(model.compartments.map(({ holds }) => holds)).toEqual(['drug', 'drug', 'drug', 'target', 'drug'])
+    expect(isLinear(model)).toBe(false)
+    // By hand: 1 nmol of 148 kg/mol is 0.148 mg.
+    const binding = model.transfers.find((transfer) => transfer.kind === 'binding')
+    expectWithin(binding?.association ?? Number.NaN, 0.4 / 0.148, { relative: 1e-15 })
+    expect(binding).toMatchObject({ drug: place('central'), target: place('receptor'), complex: place('complex') })
+    expect(binding?.dissociation).toBe(0.04)
+    const production = model.transfers.find((transfer) => transfer.kind === 'production')
+    expectWithin(production?.rate ?? Number.NaN, 0.75 * 0.148, { relative: 1e-15 })
+    expect(model.observations.map(({ of, volume }) => [of, volume])).toEqual([
+      [[1, 4], 3.1],
+      [[3], 3.1],
+      [[3, 4], 3.1]
+    ])
+  })
+
+  test('begin with the target that the body makes and loses, 0.75 nmol/h over 0.06 /h, and no drug', () => {
+    for (const { initial } of curves) {
+      expectWithin(initial.amounts[3], (0.75 / 0.06) * 0.148, { relative: 1e-12 })
+      expect(Array.from(initial.amounts).filter((_, i) => i !== 3)).toEqual([0, 0, 0, 0])
+    }
+  })
+
+  test('lie on each other within 1 % of the peak, and differ', () => {
+    const differences = Array.from({ length: 42 }, (_, day) => {
+      const [a, b] = curves.map((curve) => valueAt(curve, { kind: 'observed' }, 24 * (day + 1), 'before'))
+      return Math.abs(a - b)
+    })
+    const peak = Math.max(
+      ...Array.from({ length: 42 }, (_, d) => valueAt(full, { kind: 'observed' }, 24 * (d + 1), 'before'))
+    )
+    expect(Math.max(...differences)).toBeLessThan(0.01 * peak)
+    expect(Math.max(...differences)).toBeGreaterThan(1e-5 * peak)
+    expect(approximated.pieces.length).toBe(full.pieces.length)
+  })
+})
+
+describe('what the sources of the nonlinear models print', () => {
+  const value = (id: string, name: string): number => {
+    const parameter = fileOf(id).parameters[name]
+    return parameter.typical[0].value
+  }
+
+  // Grasela et al. 1983, abstract: the printed maximum rate and half-saturation; levels by Km R / (Vm - R), recomputed.
+  test.each([
+    [200, 5.3023255814],
+    [250, 8.63636363636],
+    [300, 14.8695652174],
+    [350, 30.6923076923],
+    [400, 152]
+  ])('phenytoin: %s mg of acid a day lead to %s mg/L in an adult of 70 kg', (amount, level) => {
+    expectWithin(phenytoinAverage(amount) ?? Number.NaN, level, { relative: 1e-9 })
+  })
+
+  test.each([415, 430])('phenytoin: %s mg of acid a day have no steady state', (amount) => {
+    expect(phenytoinAverage(amount)).toBeUndefined()
+  })
+
+  test('ethanol: the volumes sum to the printed 35.8 L within 0.5 %', () => {
+    expectWithin(value('ethanol-norberg-2000', 'VC') + value('ethanol-norberg-2000', 'VT'), 35.8, { relative: 0.005 })
+  })
+
+  test('omalizumab: half-lives of free drug and free IgE are the printed 23 and 2.4 days, and IgE some 427 ng/mL', () => {
+    const of = (name: string): number => value('omalizumab-hayashi-2007', name)
+    expectWithin((Math.LN2 * of('Vx')) / of('CLx') / 24, 23, { absolute: 0.5 })
+    expectWithin((Math.LN2 * of('Vx')) / of('CLe') / 24, 2.4, { absolute: 0.05 })
+    // nmol/h x 190 ug/nmol over mL/h is ug/mL; the source's production over clearance, 30.3 / 71.
+    expectWithin((of('P') * 190) / of('CLe'), 30.3 / 71, { relative: 1e-12 })
+    // Printed dissociation constant, complex in 3630 mL and drug in 5900.
+    expectWithin((((of('koff') + of('kc')) / of('kon')) * 3630) / 5900, 1.07, { relative: 1e-12 })
+    expectWithin(of('kc') * 3630, 7.32 + 5.86, { relative: 1e-12 })
+  })
+})
+
+/** Average level at steady state of an endless oral input of acid, where there is one. */
+function phenytoinAverage(amount: number): number | undefined {
+  const day = { value: 24, unit: 'h' }
+  const zero = { value: 0, unit: 'h' }
+  const dose = { route: 'oral', product: 'phenytoin acid', over: day, at: zero, every: day }
+  const text = JSON.stringify({
+    format: 'phasewise-study',
+    version: 1,
+    title: 'a steady state',
+    model: 'phenytoin-grasela-1983',
+    patient: { age: { value: 30, unit: 'a' }, weight: { value: 70, unit: 'kg' }, origin: 'European' },
+    regimens: [{ name: 'daily', doses: [{ ...dose, amount: { value: amount, unit: 'mg' } }] }],
+    sampling: { until: { value: 48, unit: 'h' }, every: { value: 12, unit: 'h' } }
+  })
+  return resultOf(text).regimens[0].exposure.steadyState.average
+}
 
 describe('the published models', () => {
   test('are at least ten, three of children or neonates and two of whole blood among them', () => {
@@ -162,8 +313,8 @@ describe('the published models', () => {
 })
 
 describe('the worked studies', () => {
-  test('are five, in the invented scenario', () => {
-    expect(studies.length).toBe(5)
+  test('are seven, in the invented scenario', () => {
+    expect(studies.length).toBe(7)
     const names = studies.map(({ text }) => resultOf(text).study.drugModel.source.kind)
     expect(new Set(names)).toEqual(new Set(['invented']))
   })
@@ -192,6 +343,24 @@ describe('the worked studies', () => {
     expect(metAll('dialysis')).not.toContain('1 g before each session')
     expect(metAll('dialysis')).toContain('1 g after each session')
   })
+
+  test('stepped up too far: one step reaches the window, two at once have no steady state and leave it', () => {
+    expect(metAll('stepped-up-too-far')).toEqual(['200 mg every 12 h from day 8'])
+    const [now, step, tooFar] = resultOf(textOf('../models/studies/stepped-up-too-far.json')).regimens
+    expect(now.exposure.steadyState.average).toBeLessThan(10)
+    // A third more drug, more than twice the level.
+    expect(step.exposure.steadyState.average).toBeGreaterThan(2 * (now.exposure.steadyState.average ?? Number.NaN))
+    // 550 mg of salt a day x 0.92 x 0.95 against 500 mg/d x (62 / 70)^0.75.
+    expect(tooFar.exposure.steadyState.why.average).toBe(
+      'no steady state: the dose rate 480.7 mg/d is above the capacity 456.5 mg/d'
+    )
+    expect(step.overLimits).toEqual([])
+    expect(tooFar.overLimits.map(({ of }) => of)).toEqual(['step'])
+  })
+
+  test('bound by its target: the same amount every 2 weeks after a larger first dose holds the target throughout', () => {
+    expect(metAll('bound-by-its-target')).toEqual(['150 mg first, then 75 mg every 2 weeks'])
+  })
 })
 
 /** Names of the regimens that meet every target; a target that cannot be evaluated is not met. */
@@ -203,11 +372,11 @@ function metAll(id: string): readonly string[] {
   )
 }
 
-/** Amounts move through at most a dozen states, each good to some 1e-14: 1e-12 leaves room for the sums. */
-function expectRow(trajectory: Trajectory, row: ExpectedRow): void {
+/** Linear amounts move through at most a dozen states, each good to some 1e-14: 1e-12 leaves room for the sums. */
+function expectRow(trajectory: Trajectory, row: ExpectedRow, relative = 1e-12): void {
   const time = row.time_h
   const near = (actual: number, expected: number, what: string): void =>
-    expectWithin(actual, expected, { relative: 1e-12 }, `${what} at ${time} h`)
+    expectWithin(actual, expected, { relative }, `${what} at ${time} h`)
   near(valueAt(trajectory, { kind: 'observed' }, time, 'before'), row.concentration_mg_L, 'concentration')
   near(areaBetween(trajectory, { kind: 'observed' }, 0, time), row.auc_mg_h_L, 'area')
   row.effectSites_mg_L.forEach((value, index) => {
@@ -230,7 +399,9 @@ function eliminatedBy(trajectory: Trajectory, time: number): number {
 
 /** Nonnegative and finite within every piece, and at its end exactly as much drug as there was and entered. */
 function expectSound(trajectory: Trajectory): void {
-  let before = sumOf(trajectory.initial.amounts)
+  const drugIn = (model: Model, amounts: ReadonlyVector): number =>
+    sumOf(Array.from(amounts).filter((_, i) => model.compartments[i].holds === 'drug'))
+  let before = drugIn(trajectory.pieces[0].segment.model, trajectory.initial.amounts)
   for (const piece of trajectory.pieces) {
     const { segment } = piece
     const amounts = new Float64Array(segment.model.compartments.length)
@@ -245,9 +416,14 @@ function expectSound(trajectory: Trajectory): void {
         expect.fail(`at ${segment.start} h + ${offset} h: ${values.join(', ')}`)
       }
       const largest = Math.max(before + entered, 1e-300)
-      expectWithin(sumOf(amounts) + gone, before + there, { absolute: 1e-12 * largest }, 'drug in and out')
+      expectWithin(
+        drugIn(segment.model, amounts) + gone,
+        before + there,
+        { absolute: 1e-12 * largest },
+        'drug in and out'
+      )
     }
-    before = sumOf(amounts)
+    before = drugIn(segment.model, amounts)
   }
 }
 
@@ -268,6 +444,12 @@ function resultOf(study: string): StudyResult {
   if (!outcome.ok) throw new Error(outcome.issues.map(({ path, message }) => `${path}: ${message}`).join('\n'))
   results.set(study, outcome.result)
   return outcome.result
+}
+
+function fileOf(id: string) {
+  const model = models.find((file) => file.id === id)
+  if (model === undefined) throw new RangeError(`no model ${id}`)
+  return model.file
 }
 
 function shippedModel(id: string): unknown {
