@@ -1,3 +1,4 @@
+import type { MilligramHoursPerLitre } from '../units/canonical'
 import { areaBetween, extremes, valueAt } from './curve'
 import { effectiveHalfLife, operationalHalfLife } from './halfLives'
 import { startsOf } from './intervals'
@@ -43,7 +44,7 @@ export function accumulationOf(steady: SteadyPeriod, store: OperatorStore): Accu
       firstTrough > 0
         ? valueAt(course, OBSERVED, period, 'before') / firstTrough
         : 'the level at the end of the first period is 0',
-    effectiveHalfLife: effective(steady, area, store),
+    effectiveHalfLife: effective(steady, firstArea, store),
     operationalHalfLife: operational(steady)
   }
 }
@@ -58,11 +59,11 @@ function noAccumulation(why: string): Accumulation {
   }
 }
 
-function effective(steady: SteadyPeriod, area: number, store: OperatorStore): NumberOrReason {
+function effective(steady: SteadyPeriod, firstArea: MilligramHoursPerLitre, store: OperatorStore): NumberOrReason {
   const carried = areaBetween(carriedPart(steady, store), OBSERVED, 0, steady.period)
   return (
     severalDoses(steady) ??
-    effectiveHalfLife(steady.period, area, carried) ??
+    effectiveHalfLife(steady.period, firstArea, carried) ??
     'nothing is carried over to the next dose'
   )
 }

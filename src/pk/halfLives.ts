@@ -1,4 +1,4 @@
-import { exp, ln } from '../numerics/elementary'
+import { exp, ln, log1p } from '../numerics/elementary'
 import { rootBetween } from '../numerics/root'
 import type { Hours, MilligramHoursPerLitre, MilligramsPerLitre } from '../units/canonical'
 import { extremes, valueAt } from './curve'
@@ -17,17 +17,17 @@ const DOUBLINGS = 60
 
 /**
  * Half-life that a single compartment would need for the same accumulation: tau ln 2 / ln(R / (R - 1)), R the
- * accumulation ratio. R / (R - 1) is the steady-state area over what of it is carried over from earlier doses, and is
- * taken from these two, so that an R near 1 keeps its digits. Undefined where nothing is carried over.
- * CDISC term C95007.
+ * accumulation ratio. R / (R - 1) is 1 + the area of the first period over what of the steady-state area is carried over
+ * from earlier doses, and is taken from these two, so that an R near 1 and a very large one keep their digits. Undefined
+ * where nothing is carried over. CDISC term C95007.
  */
 export function effectiveHalfLife(
   period: Hours,
-  steady: MilligramHoursPerLitre,
+  first: MilligramHoursPerLitre,
   carriedOver: MilligramHoursPerLitre
 ): Hours | undefined {
   if (!(carriedOver > 0)) return undefined
-  return (period * Math.LN2) / ln(steady / carriedOver)
+  return (period * Math.LN2) / log1p(first / carriedOver)
 }
 
 /**
