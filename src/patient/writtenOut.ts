@@ -1,5 +1,6 @@
 import type { Issue } from '../pk/issue'
 import type { Compartment, EffectSite, Model, Observation, Transfer } from '../pk/model'
+import { significant } from './covariateWords'
 import type { DrugModel, DrugTransfer } from './drugModel'
 
 /** What one individual's numbers turn the file's compartments and transfers into. */
@@ -113,6 +114,8 @@ export function writtenOut(drugModel: DrugModel, value: (name: string) => number
     }
   })
 
+  issues.push(...excessiveProduction(drugModel, { compartments, transfers }))
+
   const observations = drugModel.observations.flatMap((observation, position): Observation[] => {
     const of = observation.of.map(at)
     const volumes = of.flatMap((index) => compartments[index]?.volume ?? [])
@@ -143,6 +146,33 @@ export function writtenOut(drugModel: DrugModel, value: (name: string) => number
     })
   if (issues.length > 0 || observed === undefined) return { ok: false, issues }
   return { ok: true, model: { compartments, transfers, effectSites, observed, observations }, indexOf }
+}
+
+/** A target that is lost by saturable paths alone has a drug-free steady state only where they can carry what is produced. */
+function excessiveProduction(
+  drugModel: DrugModel,
+  { compartments, transfers }: Pick<Model, 'compartments' | 'transfers'>
+) {
+  return compartments.flatMap(({ name, holds }, place): Issue[] => {
+    if (holds !== 'target') return []
+    let produced = 0
+    let lost = 0
+    for (const transfer of transfers) {
+      if (transfer.kind === 'production' && transfer.into === place) produced += transfer.rate
+      if (transfer.kind === 'saturable' && transfer.from === place) lost += transfer.maximumRate
+      if (transfer.kind === 'first-order' && transfer.from === place) return []
+    }
+    if (lost === 0 || produced < lost) return []
+    const position = drugModel.transfers.findIndex(
+      (transfer) => transfer.kind === 'production' && transfer.into === name
+    )
+    return [
+      {
+        path: `model.transfers[${position}]`,
+        message: `the target ${name} is produced at ${significant(produced, 4)} mg/h and can be lost at ${significant(lost, 4)} mg/h at most: it has no drug-free steady state`
+      }
+    ]
+  })
 }
 
 /** Append the stages of one transit; they share one table column, and their names stay unique if two transits run alongside. */

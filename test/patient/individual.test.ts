@@ -327,6 +327,81 @@ describe('transfers written out', () => {
     expect(out.observations).toEqual([{ name: 'total', of: [0, 2], volume: out.compartments[0]!.volume }])
   })
 
+  test('a Hill exponent is 1 where the file names none, and a number stands for itself', () => {
+    const more = [constant('Vmax', 'mg/h', 20), constant('Km', 'mg/L', 5)]
+    const hillOf = (hill?: number) => {
+      const saturable = { kind: 'saturable', from: 'central', maximumRate: 'Vmax', halfSaturation: 'Km' } as const
+      const transfers: DrugTransfer[] = [{ ...saturable, to: 'peripheral', ...(hill === undefined ? {} : { hill }) }]
+      return made(rebuilt({ transfers }, more), woman).subject.model.transfers
+    }
+    expect(hillOf()).toEqual([{ kind: 'saturable', from: 1, to: 2, maximumRate: 20, halfSaturation: 5, hill: 1 }])
+    expect(hillOf(2)[0]).toMatchObject({ hill: 2 })
+  })
+
+  test.each([
+    ['maximum rate', 'Vmax', /Vmax comes out as 0 mg\/h: a maximum rate must be above 0/],
+    ['half-saturation', 'Km', /Km comes out as 0 mg\/L: a half-saturation must be above 0/]
+  ])('a %s of 0 in this person is an issue naming it', (_, zero, message) => {
+    const more = [constant('Vmax', 'mg/h', zero === 'Vmax' ? 0 : 20), constant('Km', 'mg/L', zero === 'Km' ? 0 : 5)]
+    const transfers: DrugTransfer[] = [
+      { kind: 'saturable', from: 'central', maximumRate: 'Vmax', halfSaturation: 'Km' }
+    ]
+    const issues = issuesOf(rebuilt({ transfers }, more), woman)
+    expect(issues.map((issue) => issue.message).join()).toMatch(message)
+  })
+
+  test('a maximum rate contains the bioavailability where the model is apparent; a half-saturation does not', () => {
+    const transfers: DrugTransfer[] = [
+      { kind: 'saturable', from: 'central', maximumRate: 'Vmax', halfSaturation: 'Km' }
+    ]
+    const more = [constant('Vmax', 'mg/h', 20), constant('Km', 'mg/L', 5)]
+    const { parameters } = made(rebuilt({ transfers, apparent: true, routes: [] }, more), woman)
+    expect(['Vmax', 'Km', 'V1'].map((name) => parameters.get(name)?.label)).toEqual(['Vmax/F', 'Km', 'V1/F'])
+  })
+
+  test('a target that is produced faster than saturable paths can lose it is an issue', () => {
+    const model = (rate: number) =>
+      rebuilt(
+        {
+          compartments: [
+            { id: 'central', volume: 'V1', observed: true },
+            { id: 'target', volume: 'V1', observed: false },
+            { id: 'complex', volume: 'V1', observed: false }
+          ],
+          transfers: [
+            {
+              kind: 'binding',
+              drug: 'central',
+              target: 'target',
+              complex: 'complex',
+              association: 'kon',
+              dissociation: 'koff',
+              approximation: 'none'
+            },
+            { kind: 'production', into: 'target', rate: 'ksyn' },
+            { kind: 'saturable', from: 'target', maximumRate: 'Vmax', halfSaturation: 'Km' },
+            { kind: 'clearance', from: 'central', clearance: 'CL' }
+          ],
+          routes: []
+        },
+        [
+          constant('Vmax', 'mg/h', 2),
+          constant('Km', 'mg/L', 5),
+          constant('kon', 'L/mg/h', 0.3),
+          constant('koff', '/h', 0.01),
+          constant('ksyn', 'mg/h', rate)
+        ]
+      )
+    expect(issuesOf(model(1.9), woman)).toEqual([])
+    expect(issuesOf(model(2), woman)).toEqual([
+      {
+        path: 'model.transfers[1]',
+        message:
+          'the target target is produced at 2 mg/h and can be lost at 2 mg/h at most: it has no drug-free steady state'
+      }
+    ])
+  })
+
   test('an observation over different volumes is an issue', () => {
     const model = rebuilt({ observations: [{ id: 'both', of: ['central', 'peripheral'] }] })
     expect(issuesOf(model, woman).map((issue) => issue.path)).toEqual(['model.observations[0]'])
