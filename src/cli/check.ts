@@ -26,8 +26,7 @@ interface Findings {
 
 /** `phasewise check FILE`: validate, run the model's own checks, compare the two methods. Exit status 1 for any failure. */
 export function check(path: string, options: OutputOptions): void {
-  const bytes = readInput(path)
-  const found = isModelFile(bytes) ? checkModelFile(bytes) : checkStudyFile(bytes)
+  const found = findingsOf(path)
   const failed = found.checks.filter(({ pass }) => !pass)
   const faults: Issue[] = [
     ...found.problems,
@@ -39,11 +38,27 @@ export function check(path: string, options: OutputOptions): void {
   if (faults.length > 0) throw new InputAtFault(faults)
 }
 
-/** A file that says so is read as a model; everything else as a study, whose reader then says what is missing. */
+/** A file that cannot be read is a problem like any other, so that a program that reads the document learns of it too. */
+function findingsOf(path: string): Findings {
+  try {
+    const bytes = readInput(path)
+    return isModelFile(bytes) ? checkModelFile(bytes) : checkStudyFile(bytes)
+  } catch (error) {
+    if (!(error instanceof InputAtFault)) throw error
+    return { kind: 'study', problems: error.issues, checks: [], cautions: [] }
+  }
+}
+
+/**
+ * A file that says so, or that has compartments and no regimens, is read as a model; everything else as a study. The reader
+ * then says what is missing.
+ */
 function isModelFile(bytes: Uint8Array): boolean {
   try {
     const raw: unknown = JSON.parse(new TextDecoder().decode(bytes))
-    return typeof raw === 'object' && raw !== null && 'format' in raw && raw.format === 'phasewise-model'
+    if (typeof raw !== 'object' || raw === null) return false
+    if ('format' in raw && raw.format === 'phasewise-model') return true
+    return 'compartments' in raw && !('regimens' in raw)
   } catch {
     return false
   }

@@ -1,5 +1,6 @@
 import { basename } from 'node:path'
 import { type ColumnMeaning, csvwMetadata } from '../report/csvw'
+import { limitCautions } from '../study/cautions'
 import type { StudyResult } from '../study/result'
 import { writeFiles, writeToStandardOutput } from './output'
 
@@ -19,10 +20,17 @@ export interface Offer {
   readonly text?: () => Iterable<string>
 }
 
+function sayLimits({ study, regimens }: StudyResult): void {
+  const cautions = study.regimens.flatMap((regimen, i) => limitCautions(regimen, regimens[i]?.overLimits ?? []))
+  for (const caution of new Set(cautions)) process.stderr.write(`Caution: ${caution}.\n`)
+}
+
 /** Write what was asked for: JSON by `--json` or a name that ends in it, CSV with its metadata file beside it, or text. */
 export function emit(offer: Offer, options: OutputOptions): void {
   if (options.out === undefined) {
     writeToStandardOutput(options.json ? offer.json() : (offer.text ?? offer.csv)())
+    // A bare table has no place for a caution; documents and texts carry all of theirs.
+    if (options.json !== true && offer.text === undefined) sayLimits(offer.result)
     return
   }
   if (options.json || options.out.endsWith('.json')) {

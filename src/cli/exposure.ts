@@ -13,7 +13,7 @@ export function exposure(path: string, options: OutputOptions): void {
       result,
       columns: LONG_COLUMNS,
       csv: () => [exposureCsv(result)],
-      json: () => [`${JSON.stringify(exposureDocument(result), null, 2)}\n`],
+      json: () => [`${JSON.stringify({ ...exposureDocument(result), cautions: result.cautions }, null, 2)}\n`],
       text: () => [exposureText(result)]
     },
     options

@@ -31,8 +31,17 @@ export function writeFiles(files: readonly { readonly path: string; readonly chu
     for (const path of temporary) rmSync(path, { force: true })
     const code = (error as { code?: string }).code
     if (code === undefined) throw error
-    throw new InputAtFault([{ path: '', message: `${files[0]!.path} cannot be written: ${code}` }])
+    throw new InputAtFault([{ path: '', message: `${files[0]!.path} cannot be written: ${REASONS[code] ?? code}` }])
   }
+}
+
+const REASONS: Readonly<Record<string, string>> = {
+  ENOENT: 'there is no such folder',
+  ENOTDIR: 'what should be its folder is a file',
+  EISDIR: 'it is a folder',
+  EACCES: 'permission is denied',
+  EROFS: 'it is on a disk that can only be read',
+  ENOSPC: 'the disk is full'
 }
 
 /** Whether the whole chunk was taken; false where the reader has gone. */

@@ -13,7 +13,7 @@ export function phases(path: string, options: OutputOptions): void {
       result,
       columns: LONG_COLUMNS,
       csv: () => [phasesCsv(result)],
-      json: () => [`${JSON.stringify(phasesDocument(result), null, 2)}\n`],
+      json: () => [`${JSON.stringify({ ...phasesDocument(result), cautions: result.cautions }, null, 2)}\n`],
       text: () => [phasesText(result)]
     },
     options

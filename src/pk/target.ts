@@ -34,6 +34,8 @@ export interface Target {
   readonly high?: number
   /** Free fraction where the target is unbound, divided by the MIC where limits are multiples of it; else 1. */
   readonly factor: number
+  /** The free fraction is in the factor. */
+  readonly unbound?: true
   /** Unit of the compared value: mg/L, mg.h/L, h or 1. */
   readonly unit: string
   /** Share of time that must be inside, above or below. */

@@ -48,7 +48,7 @@ export function* tableCsv(result: StudyResult): Generator<string> {
   yield csvRows(rows)
 }
 
-/** The table as one JSON document, in pieces: `{ columns: [names], rows: [[…]] }`. */
+/** The table as one JSON document, in pieces: `{ columns: [names], rows: [[…]], cautions: [texts] }`. */
 export function* tableJson(result: StudyResult): Generator<string> {
   const columns = tableColumns(result).map((column) => column.name)
   yield `{"columns":${JSON.stringify(columns)},"rows":[`
@@ -57,7 +57,7 @@ export function* tableJson(result: StudyResult): Generator<string> {
     yield `${separator}${JSON.stringify(row)}`
     separator = ',\n'
   }
-  yield '\n]}\n'
+  yield `\n],"cautions":${JSON.stringify(result.cautions)}}\n`
 }
 
 function modelOf(result: StudyResult) {

@@ -5,6 +5,7 @@ import type { RegimenExposure } from '../pk/exposure'
 import { repeatsAtEnd } from '../pk/repeating'
 import type { Hours } from '../units/canonical'
 import type { Study, StudyRegimen } from './study'
+import { targetCautions } from './targetCautions'
 
 export interface CautionedRegimen {
   readonly regimen: StudyRegimen
@@ -26,12 +27,7 @@ export function regimenCautions(given: CautionedRegimen): readonly string[] {
     const repeats = regimen.lines.some((line) => repeatsAtEnd(line, given.until))
     if (repeats) cautions.push(`${regimen.name}: ${why.average}`)
   }
-  for (const over of overLimits) {
-    if (regimen.reasons[over.line] !== undefined) continue
-    cautions.push(
-      `${regimen.name}: dose ${over.number} of line ${over.line + 1} is over the ${over.of} limit of the drug without a reason given (limit: ${over.source})`
-    )
-  }
+  cautions.push(...limitCautions(regimen, overLimits))
   const during = course.administrations.filter(
     (given) =>
       !given.missed &&
@@ -52,6 +48,16 @@ export function regimenCautions(given: CautionedRegimen): readonly string[] {
   return cautions
 }
 
+/** Doses over a limit of the drug without a reason: said on every output, a bare table's too. */
+export function limitCautions(regimen: StudyRegimen, overLimits: readonly DoseOverLimit[]): readonly string[] {
+  return overLimits
+    .filter(({ line }) => regimen.reasons[line] === undefined)
+    .map(
+      ({ number, line, of, source }) =>
+        `${regimen.name}: dose ${number} of line ${line + 1} is over the ${of} limit of the drug without a reason given (limit: ${source})`
+    )
+}
+
 /** All cautions of one study, each once: of the model and patient, of the regimens, of what the arithmetic leaves out. */
 export function studyCautions(
   study: Study,
@@ -62,10 +68,11 @@ export function studyCautions(
   if (study.people.length > 1) {
     cautions.push('the patient changes in steps at the times written; between them nothing is interpolated')
   }
-  if (study.targets.some((target) => target.factor !== 1) && study.drugModel.drug.fractionUnbound !== undefined) {
+  if (study.targets.some((target) => target.unbound === true)) {
     cautions.push(
       `unbound concentrations use a constant free fraction of ${study.drugModel.drug.fractionUnbound}, whatever the level`
     )
   }
+  cautions.push(...targetCautions(study))
   return [...new Set([...cautions, ...regimens])]
 }

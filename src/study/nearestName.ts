@@ -1,8 +1,14 @@
 /** At most this many known names are listed in a message. */
 const MOST_LISTED = 12
 
-/** The known name that is fewest single-letter edits away (case ignored first); undefined where none is known. */
+/**
+ * The known name that is nearest, case ignored: the first that begins with what was typed, else the one fewest single-letter
+ * edits away. Undefined where none is known.
+ */
 export function nearestName(typed: string, known: readonly string[]): string | undefined {
+  // "F" is an abbreviation of "female", though "male" is fewer edits away.
+  const abbreviated = known.find((name) => typed !== '' && name.toLowerCase().startsWith(typed.toLowerCase()))
+  if (abbreviated !== undefined) return abbreviated
   let best: string | undefined
   let bestDistance = Number.POSITIVE_INFINITY
   for (const name of known) {
@@ -13,6 +19,15 @@ export function nearestName(typed: string, known: readonly string[]): string | u
     }
   }
   return best
+}
+
+/** The nearest name, where it is so near that it may have been meant: where all are listed, a far one would mislead. */
+export function likelyName(typed: string, known: readonly string[]): string | undefined {
+  const nearest = nearestName(typed, known)
+  if (nearest === undefined) return undefined
+  const [a, b] = [typed.toLowerCase(), nearest.toLowerCase()]
+  const near = (typed !== '' && b.startsWith(a)) || 3 * editDistance(a, b) <= Math.min(a.length, b.length)
+  return near ? nearest : undefined
 }
 
 /** `the nearest is "oral", of "intravenous", "oral"`, to end a message about an unknown name. */

@@ -33,7 +33,7 @@ export function resolveChecks(file: ModelFile, path: string, model: ResolvedMode
     const context = { covariates: model.covariates, choices: drugModel.covariates, problems: convert.problems }
     checks.push({
       ...asked,
-      person: resolvePerson(check.patient, below(at, 'patient'), NOBODY, context),
+      person: resolvePerson(check.patient ?? {}, below(at, 'patient'), NOBODY, context),
       lines: (check.doses ?? []).map((dose, i) => resolveDose(dose, below(below(at, 'doses'), i), doses)),
       ...present('at', check.at && convert.number('time', check.at, below(at, 'at'))),
       expected: convert.number(asked.kind, check.expected, below(at, 'expected')),

@@ -2,7 +2,7 @@ import type { CovariateChoices, CovariateRange, DeclaredCovariate } from '../pat
 import type { Quantity } from '../units/quantity'
 import type { Kind } from '../units/unitTable'
 import { type Converter, present } from './converter'
-import type { ModelFile, RangeFile } from './file/modelSchema'
+import type { DeclaredFile, ModelFile, RangeFile } from './file/modelSchema'
 import { COVARIATE_KINDS, type Covariate, covariateValue } from './knownCovariates'
 import { knownNames } from './nearestName'
 import { below } from './path'
@@ -27,9 +27,10 @@ export function declaredCovariates(
 ): Record<string, DeclaredCovariate> {
   const declared = new Map<string, DeclaredCovariate>()
   const equations: readonly string[] = ['creatinineClearance', 'estimatedGfr', 'bodySurfaceArea', 'leanWeight']
-  for (const [name, own] of Object.entries(file.covariates ?? {})) {
+  // Computed covariates, which have an equation instead, are known by their names.
+  for (const [name, own] of Object.entries(file.covariates ?? {}) as [string, DeclaredFile | undefined][]) {
     const at = below(below(path, 'covariates'), name)
-    if (equations.includes(name) || own === undefined || !problems.isSound(at) || 'equation' in own) continue
+    if (equations.includes(name) || own === undefined || !problems.isSound(at)) continue
     if (RESERVED.includes(name)) {
       problems.add(at, `"${name}" is known to the program and is not declared; only covariates of the model's own are`)
     } else if (own.unit !== undefined && own.categories === undefined && own.frequencies === undefined) {
@@ -89,6 +90,8 @@ export function covariateChoices(file: ModelFile, path: string, convert: Convert
   })
   const clearance = sound('creatinineClearance')
   const gfr = sound('estimatedGfr')
+  const area = sound('bodySurfaceArea')
+  const lean = sound('leanWeight')
   return {
     ...present(
       'creatinineClearance',
@@ -102,8 +105,8 @@ export function covariateChoices(file: ModelFile, path: string, convert: Convert
       'estimatedGfr',
       gfr && { equation: gfr.equation, ...guard('indexedFiltration', gfr, below(where, 'estimatedGfr')) }
     ),
-    ...present('bodySurfaceArea', sound('bodySurfaceArea')),
-    ...present('leanWeight', sound('leanWeight'))
+    ...present('bodySurfaceArea', area && { equation: area.equation ?? 'mosteller' }),
+    ...present('leanWeight', lean && { equation: lean.equation ?? 'janmahasatian' })
   }
 }
 

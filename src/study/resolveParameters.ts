@@ -51,7 +51,7 @@ export function resolveParameters(request: ParametersRequest): Parameter[] {
     })
     checkPositive(name, parameter, at, request)
   }
-  checkCorrelations(request)
+  checkNamesBesideParameters(request)
   return parameters
 }
 
@@ -154,8 +154,15 @@ function lastStep(path: string): string {
   return path.slice(path.lastIndexOf('.') + 1)
 }
 
-function checkCorrelations({ file, path, convert }: ParametersRequest): void {
+/** The names of parameters in `typicalUncertainty` and `correlations`. */
+function checkNamesBesideParameters({ file, path, convert }: ParametersRequest): void {
   const { problems } = convert
+  const uncertainty = below(path, 'typicalUncertainty')
+  const stated = problems.isSound(uncertainty) ? Object.keys(file.typicalUncertainty?.relativeSe ?? {}) : []
+  for (const name of stated.filter((each) => !Object.hasOwn(file.parameters, each))) {
+    const known = knownNames(name, Object.keys(file.parameters))
+    problems.add(below(below(uncertainty, 'relativeSe'), name), `no parameter is called "${name}"; ${known}`)
+  }
   const seen = new Set<string>()
   for (const [at, { between }] of open(file.correlations, below(path, 'correlations'), problems)) {
     between.forEach((name, i) => {

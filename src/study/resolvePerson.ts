@@ -72,9 +72,10 @@ export function inputsOfComputed(name: ComputedCovariate, choices: CovariateChoi
   switch (name) {
     case 'bodyMassIndex':
     case 'bodySurfaceArea':
-    case 'adjustedWeight':
     case 'leanWeight':
       return ['weight', 'height']
+    case 'adjustedWeight':
+      return ['weight', 'height', 'idealWeight']
     case 'idealWeight':
       return ['height']
     case 'creatinineClearance': {

@@ -176,7 +176,7 @@ function checkBlocks(file: StudyFile, model: ResolvedModel | undefined, convert:
   }
   if (model === undefined || file.plan === undefined || !problems.isSound('plan')) return
   const routes = model.drugModel.routes.map(({ name }) => name)
-  file.plan.routes.forEach((route, i) => {
+  file.plan.routes?.forEach((route, i) => {
     if (!routes.includes(route)) {
       problems.add(below('plan.routes', i), `the model has no route "${route}"; ${knownNames(route, routes)}`)
     }

@@ -53,6 +53,7 @@ export function resolveTarget(target: TargetFile, path: string, context: TargetC
     ...present('low', low),
     ...present('high', high),
     factor: free / mic,
+    ...(target.unbound === true && { unbound: true as const }),
     unit,
     share: target.share ?? 1,
     ...present('after', target.after && convert.number('time', target.after, below(path, 'after'))),
@@ -106,9 +107,6 @@ function checkKeysOfKind(target: TargetFile, path: string, problems: Problems): 
     problems.add(below(path, 'perMic'), 'give "timesMic" or "perMic", not both')
   if (isTime && target.share === undefined)
     problems.add(below(path, 'share'), `a target "${kind}" needs "share", the share of time`)
-  if (!isTime && kind !== 'window' && target.share !== undefined) {
-    problems.add(below(path, 'share'), `"share" is for window, time-above and time-below; a target "${kind}" has none`)
-  }
   if (kind === 'level' && target.after === undefined)
     problems.add(below(path, 'after'), 'a target "level" needs "after": how long after the dose')
   if (kind === 'level' && target.from === undefined) {
@@ -136,12 +134,6 @@ function checkSharing(target: TargetFile, path: string, context: TargetContext):
     problems.add(
       below(path, 'unbound'),
       "an unbound target needs the drug's free fraction; the model states no drug.fractionUnbound"
-    )
-  }
-  if (target.of !== undefined) {
-    problems.add(
-      below(path, 'unbound'),
-      'the free fraction is that of the observed compartment; leave out "unbound" or "of"'
     )
   }
 }

@@ -212,6 +212,7 @@ describe('targets become canonical', () => {
         signal: { kind: 'observed' },
         low: 4,
         factor: 0.35,
+        unbound: true,
         unit: '1',
         share: 0.5
       }

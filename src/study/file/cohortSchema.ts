@@ -39,8 +39,8 @@ const people = z.discriminatedUnion('kind', [
 ])
 
 export const cohort = z.strictObject({
-  size: z.int().min(1).max(1_000_000),
-  seed: z.int().min(0),
+  size: z.int().min(1).max(1_000_000).optional(),
+  seed: z.int().min(0).optional(),
   includeUncertainty: z.boolean().optional(),
   people: people.optional(),
   thresholds: z
@@ -53,9 +53,9 @@ const CLOCK_TIME = /^(?:[01][0-9]|2[0-3]):[0-5][0-9]$/
 export const clockTime = z.string().regex(CLOCK_TIME, 'must be a time of day such as "21:15"')
 
 export const plan = z.strictObject({
-  routes: z.array(name).min(1),
-  strengths: z.array(quantity('amount')).min(1),
-  intervals: z.array(quantity('time')).min(1),
+  routes: z.array(name).min(1).optional(),
+  strengths: z.array(quantity('amount')).min(1).optional(),
+  intervals: z.array(quantity('time')).min(1).optional(),
   over: z.array(quantity('time')).optional(),
   loading: z.literal('allowed').optional(),
   largestDose: quantity('amount').optional(),

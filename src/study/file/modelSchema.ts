@@ -144,8 +144,8 @@ const covariates = z
         atMost: quantity('indexedFiltration').optional()
       })
       .optional(),
-    bodySurfaceArea: z.strictObject({ equation: z.enum(['mosteller', 'du-bois', 'haycock']) }).optional(),
-    leanWeight: z.strictObject({ equation: z.enum(['janmahasatian', 'james']) }).optional()
+    bodySurfaceArea: z.strictObject({ equation: z.enum(['mosteller', 'du-bois', 'haycock']).optional() }).optional(),
+    leanWeight: z.strictObject({ equation: z.enum(['janmahasatian', 'james']).optional() }).optional()
   })
   .catchall(declared)
 
@@ -199,7 +199,7 @@ const route = z.strictObject({
 
 const check = z.strictObject({
   what: name,
-  patient: checkedPerson,
+  patient: checkedPerson.optional(),
   doses: z.array(dose).min(1).optional(),
   at: quantity('time', 'not negative').optional(),
   expected: quantityOfSomeKind(['h', 'mg/L']),
@@ -238,6 +238,7 @@ export const model = z.strictObject({
 })
 
 export type ModelFile = z.infer<typeof model>
+export type DeclaredFile = z.infer<typeof declared>
 export type ParameterFile = z.infer<typeof parameter>
 export type FactorFile = z.infer<typeof factor>
 export type RangeFile = z.infer<typeof range>

@@ -34,6 +34,12 @@ export function readStudy(
     problems.add('', 'a study is an object in braces')
     return { ok: false, issues: problems.issues }
   }
+  if ('format' in raw && raw.format === 'phasewise-model') {
+    const message =
+      'format must be "phasewise-study"; this is a model file: put it whole under "model" in a study, or run check on it'
+    problems.add('format', message)
+    return { ok: false, issues: problems.issues }
+  }
   const model = readModelOf(raw, shippedModels, problems)
   checkShape({ schema: study, raw, at: [], own: model.own, problems })
   const file = raw as StudyFile

@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import type { Kind } from '../../units/unitTable'
-import { nearestName } from '../nearestName'
+import { likelyName, nearestName } from '../nearestName'
 import { formatPath, type Step } from '../path'
 import type { Problems } from '../problems'
 import { type QuantityAsked, quantityProblem, unitProblem } from '../unitProblem'
@@ -135,7 +135,7 @@ function oneOf(name: string, input: unknown, values: readonly unknown[]): string
   const listed = values.map((value) => JSON.stringify(value)).join(', ')
   const asked = values.length === 1 ? `must be ${listed}` : `must be one of ${listed}`
   if (input === undefined) return `${name} is missing; it ${asked}`
-  const nearest = typeof input === 'string' && values.length > 1 ? nearestName(input, values.map(String)) : undefined
+  const nearest = typeof input === 'string' && values.length > 1 ? likelyName(input, values.map(String)) : undefined
   const hint = nearest === undefined ? '' : `; the nearest is "${nearest}"`
   return `${name} ${asked}, got ${describe(input)}${hint}`
 }

@@ -20,7 +20,8 @@ export const study = z.strictObject({
   format: z.literal('phasewise-study'),
   version: z.literal(1),
   title: title.optional(),
-  model: z.unknown(),
+  // Read on its own, with its own problems.
+  model: z.unknown().optional(),
   patient,
   regimens: z.array(regimen).min(1),
   targets: z.array(target).optional(),

@@ -190,7 +190,7 @@ const refused: readonly (readonly [string, () => Json, string, RegExp])[] = [
     'a binding to an unknown approximation',
     () => put(binding(), 'transfers[3].approximation', 'quasi-equilibrium'),
     'transfers[3].approximation',
-    /must be one of "none", "quasi-steady-state".*the nearest is "quasi-steady-state"/
+    /must be one of "none", "quasi-steady-state", got "quasi-equilibrium"$/
   ],
   [
     'a complex in a volume of its own',

@@ -301,7 +301,6 @@ const refused: readonly (readonly [string, () => unknown, string, RegExp])[] = [
     'targets[4].share',
     /needs "share"/
   ],
-  ['a share on a trough', () => put(study(), 'targets[2].share', 0.5), 'targets[2].share', /"share" is for window/],
   ['a share above 1', () => put(study(), 'targets[0].share', 90), 'targets[0].share', /at most 1, got 90/],
   [
     'limits the wrong way round',
