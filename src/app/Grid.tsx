@@ -70,7 +70,16 @@ function GridTable(props: { grid: GridView; titled: boolean }) {
           </tbody>
         </table>
       </Show>
-      <For each={props.grid.notes}>{(note) => <p class="footnote">{note}</p>}</For>
+      <For each={props.grid.notes}>
+        {(note) => (
+          <p class="footnote">
+            <Show when={note.mark !== ''}>
+              <sup>{note.mark}</sup>{' '}
+            </Show>
+            {note.text}
+          </p>
+        )}
+      </For>
     </section>
   )
 }

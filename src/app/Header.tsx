@@ -25,6 +25,9 @@ export function Header(props: { desk: StudyDesk }) {
     <header>
       <span class="brand">Phasewise</span>
       <h1>{desk.page()?.title ?? ''}</h1>
+      <span class="busy" role="status">
+        {desk.busy() ? 'Computing …' : ''}
+      </span>
       <div class="actions">
         <button type="button" popovertarget="worked-studies">
           Worked studies

@@ -4,6 +4,9 @@ import type { ChartView, DoseMark } from './page/chart'
 /** Height of one dose line [px]. */
 export const LANE = 30
 
+/** Room that the head of a bolus takes; closer together they are drawn without [px]. */
+const HEAD = 11
+
 /** A line a regimen: infusions as bars of their true length, boluses as slim marks with a head, missed doses as outlines. */
 export function doseLines(chart: ChartView, x: (time: number) => number, plot: Box, top: number): Shape[] {
   return chart.lanes.flatMap((lane, k): Shape[] => {
@@ -19,12 +22,18 @@ export function doseLines(chart: ChartView, x: (time: number) => number, plot: B
         text: lane.regimen.letter,
         look: `letter ${style}`
       },
-      ...lane.doses.flatMap((dose) => doseMark(dose, x, middle, style))
+      ...lane.doses.flatMap((dose) => doseMark(dose, x, middle, style, lane.doses.length * HEAD < plot.width))
     ]
   })
 }
 
-function doseMark(dose: DoseMark, x: (time: number) => number, middle: number, style: string): Shape[] {
+function doseMark(
+  dose: DoseMark,
+  x: (time: number) => number,
+  middle: number,
+  style: string,
+  headed: boolean
+): Shape[] {
   const height = 8 + 14 * Math.min(1, dose.share)
   const look = `${dose.missed ? 'dose missed' : 'dose'} ${style}`
   const left = x(dose.from)
@@ -33,8 +42,10 @@ function doseMark(dose: DoseMark, x: (time: number) => number, middle: number, s
     const width = Math.max(4, x(dose.to) - left)
     return [{ kind: 'rect', x: left, y: middle - height / 2, width, height, round: 1.5, look, title }]
   }
+  const stem: Shape = { kind: 'rect', x: left - 1, y: middle - height / 2, width: 2, height, round: 0, look, title }
+  if (!headed) return [stem]
   return [
-    { kind: 'rect', x: left - 1, y: middle - height / 2, width: 2, height, round: 0, look, title },
+    stem,
     { kind: 'rect', x: left - 3.5, y: middle - height / 2 - 3.5, width: 7, height: 7, round: 3.5, look, title }
   ]
 }

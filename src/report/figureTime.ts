@@ -9,24 +9,23 @@ export interface TimeMarks {
 const HOURS_A_DAY = 24
 
 /**
- * Days where the axis spans two or more of them, each named at its middle as often as there is room; else round
- * numbers of the axis's own unit.
+ * Days where the axis spans two or more of them and there is room to number each at its middle; weeks beyond; round
+ * numbers of the axis's own unit on a shorter one.
  */
 export function timeMarks(axis: { until: number; unit: string; hoursPerUnit: number; width: number }): TimeMarks {
   const hours = axis.until * axis.hoursPerUnit
   const days = hours / HOURS_A_DAY
   if (days < 2) return roundMarks(axis)
-  return days <= 60 ? dayMarks(axis, days) : weekMarks(axis, days)
+  return days <= 60 && axis.width / days > 22 ? dayMarks(axis, days) : weekMarks(axis, days)
 }
 
 function dayMarks(axis: { hoursPerUnit: number; width: number }, days: number): TimeMarks {
   const roomy = axis.width / days > 44
-  const every = roomy ? 1 : Math.ceil((days * 22) / axis.width)
   const unitsADay = HOURS_A_DAY / axis.hoursPerUnit
   const whole = Math.floor(days + 1e-9)
   const lines = Array.from({ length: whole + 1 }, (_, day) => day * unitsADay)
   const words: Tick[] = []
-  for (let day = 1; day <= whole; day += every) {
+  for (let day = 1; day <= whole; day++) {
     words.push({ at: (day - 0.5) * unitsADay, label: roomy || day === 1 ? `day ${day}` : `${day}` })
   }
   return { lines, words }

@@ -24,5 +24,5 @@ export function resultInNode(bytes: Uint8Array): StudyResult {
 }
 
 export function pageInNode(id: string): PageView {
-  return pageOf(resultInNode(studyBytes(id)))
+  return pageOf(resultInNode(studyBytes(id)), JSON.parse(studyBytes(id).toString()))
 }

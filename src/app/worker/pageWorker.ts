@@ -24,7 +24,7 @@ async function open(file: Blob, name: string): Promise<Outcome> {
   const outcome = runStudy(reading.study)
   if (!outcome.ok) return { ok: false, issues: outcome.issues }
   const { result } = outcome
-  const page: PageView = pageOf(result)
+  const page: PageView = pageOf(result, reading.file)
   shown = { name, result, rows: new TableRows(result) }
   return { ok: true, page }
 }

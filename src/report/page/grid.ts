@@ -29,8 +29,8 @@ export function grid(plan: GridPlan): GridView {
     }
     rows.push({ head, cells: entries.map((entry) => cellOf(entry, marks)) })
   }
-  const notes = [...marks].map(([why, mark]) => `${mark} ${sentence(polished(why))}`)
-  for (const [why, heads] of absent) notes.push(`Not defined: ${listed(heads)} (${polished(why)}).`)
+  const notes = [...marks].map(([why, mark]) => ({ mark, text: sentence(polished(why)) }))
+  for (const [why, heads] of absent) notes.push({ mark: '', text: `Not defined: ${listed(heads)} (${polished(why)}).` })
   return { ...plan, rows, notes }
 }
 

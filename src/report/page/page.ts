@@ -87,7 +87,7 @@ export interface GridView {
   readonly columns: readonly GridColumn[]
   readonly rows: readonly GridRow[]
   /** Why a value is not defined, by the mark in its cell, then what is not defined anywhere; small type below. */
-  readonly notes: readonly string[]
+  readonly notes: readonly { readonly mark: string; readonly text: string }[]
   /** Folded away until asked for. */
   readonly folded: boolean
 }

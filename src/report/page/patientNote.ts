@@ -1,9 +1,10 @@
-import { nameInWords, valueInWords } from '../../patient/covariateWords'
+import { nameInWords, unitInWords, valueInWords } from '../../patient/covariateWords'
 import type { DrugModel } from '../../patient/drugModel'
 import type { CovariateName, Person } from '../../patient/person'
-import type { Study } from '../../study/study'
+import type { PersonStretch, Study } from '../../study/study'
+import type { Quantity } from '../../units/quantity'
 import { multipleOf } from '../../units/spacing'
-import { brief, withUnit } from './number'
+import { brief, typed, withUnit } from './number'
 import { type Prose, value } from './prose'
 import { listed, polished, type Showing } from './showing'
 
@@ -13,15 +14,21 @@ const DIGITS = 6
 const SPOKEN: readonly CovariateName[] = ['weight', 'height']
 const AGES: readonly CovariateName[] = ['age', 'postnatalAge', 'gestationalAge', 'postmenstrualAge']
 
-/** The patient in a sentence, then a sentence for each change. */
-export function patientNote(study: Study, showing: Showing): readonly Prose[] {
+/** What was typed for a covariate in one stretch, where that is known. */
+export type TypedValues = (path: string, name: string) => Quantity | undefined
+
+/**
+ * The patient in a sentence, then a sentence for each change. A value that was typed in another unit than the one it is
+ * read in is shown in both, so that a slip in the unit is seen.
+ */
+export function patientNote(study: Study, showing: Showing, typedValues: TypedValues): readonly Prose[] {
   const [first, ...later] = study.people
   if (first === undefined) throw new RangeError('a study has a person from time 0 on')
   let before = first.person
-  const sentences: Prose[] = [describe(first.person, study.drugModel)]
-  for (const { from, person } of later) {
-    sentences.push(change(before, person, from, study, showing))
-    before = person
+  const sentences: Prose[] = [describe(first, study.drugModel, typedValues)]
+  for (const stretch of later) {
+    sentences.push(change(before, stretch, study, showing, typedValues))
+    before = stretch.person
   }
   if (study.sessions.length > 0) {
     const sessions = study.sessions.map((session) => {
@@ -40,8 +47,8 @@ export function since(hours: number, showing: Showing): string {
   return `${showing.typedTime(hours)} (day\u00a0${Math.floor(hours / 24) + 1})`
 }
 
-function describe(person: Person, drugModel: DrugModel): Prose {
-  const shown = (name: CovariateName) => shownValue(name, person, drugModel)
+function describe({ person, path }: PersonStretch, drugModel: DrugModel, typedValues: TypedValues): Prose {
+  const shown = (name: CovariateName) => echoed(name, person, drugModel, typedValues(path, name))
   const age = shown('age')
   const spoken = [age, ...SPOKEN.map(shown)].filter((text) => text !== undefined)
   const rest = Object.keys(person.numbers).filter((name) => name !== 'age' && !SPOKEN.includes(name))
@@ -61,13 +68,19 @@ function describe(person: Person, drugModel: DrugModel): Prose {
   return prose
 }
 
-function change(before: Person, after: Person, from: number, study: Study, showing: Showing): Prose {
+function change(
+  before: Person,
+  { from, person: after, path }: PersonStretch,
+  study: Study,
+  showing: Showing,
+  typedValues: TypedValues
+): Prose {
   const { drugModel } = study
   const names = new Set([...Object.keys(before.numbers), ...Object.keys(after.numbers)])
   const changes: string[] = []
   for (const name of names) {
     if (before.numbers[name] === after.numbers[name]) continue
-    const now = shownValue(name, after, drugModel)
+    const now = echoed(name, after, drugModel, typedValues(path, name))
     changes.push(now === undefined ? `${nameInWords(name)} no longer known` : `${nameInWords(name)} ${now}`)
   }
   for (const [name, category] of Object.entries(after.categories)) {
@@ -93,6 +106,19 @@ export function changeLabel(before: Person, after: Person, drugModel: DrugModel)
   if (name === undefined) return 'patient changes'
   const more = changed.length > 1 ? ` and ${changed.length - 1} more` : ''
   return `${nameInWords(name).replace(/^serum /, '')} ${shownValue(name, after, drugModel) ?? ''}${more}`
+}
+
+function echoed(
+  name: CovariateName,
+  person: Person,
+  drugModel: DrugModel,
+  quantity: Quantity | undefined
+): string | undefined {
+  const shown = shownValue(name, person, drugModel)
+  if (shown === undefined || quantity === undefined) return shown
+  const unit = polished(unitInWords(quantity.unit))
+  if (unit === '' || shown.endsWith(`\u00a0${unit}`)) return shown
+  return `${shown} (typed: ${typed(quantity.value)}\u00a0${unit})`
 }
 
 function shownValue(name: CovariateName, person: Person, drugModel: DrugModel): string | undefined {

@@ -25,7 +25,7 @@ function block(stretch: PhasesOfStretch, result: StudyResult, showing: Showing):
   return {
     title,
     table: phasesGrid(stretch, title, showing),
-    sentences: sentences(stretch, showing),
+    sentences: sentences(stretch, result.study.drugModel.apparent ? '/F' : '', showing),
     ...(stretch.phases.length === 0 ? {} : { figure: curves(stretch, result, showing) })
   }
 }
@@ -72,14 +72,15 @@ function phasesGrid(stretch: PhasesOfStretch, title: string, showing: Showing): 
   })
 }
 
-function sentences(stretch: PhasesOfStretch, showing: Showing): Prose[] {
+/** `over` is `/F` where clearances and volumes contain the bioavailability. */
+function sentences(stretch: PhasesOfStretch, over: string, showing: Showing): Prose[] {
   const prose: Prose[] = []
   const said = (name: string, number: number | undefined, unit: string) =>
     number === undefined ? [] : [`${name} `, value(withUnit(significant(number), unit)), ', ']
   const moments = [
-    ...said('clearance', stretch.clearance, 'L/h'),
-    ...said('Vss', stretch.vss, 'L'),
-    ...said('Vz', stretch.vz, 'L'),
+    ...said(`clearance${over}`, stretch.clearance, 'L/h'),
+    ...said(`Vss${over}`, stretch.vss, 'L'),
+    ...said(`Vz${over}`, stretch.vz, 'L'),
     ...said('mean residence time', stretch.mrt === undefined ? undefined : showing.time(stretch.mrt), showing.timeUnit),
     ...said(
       'terminal half-life',
