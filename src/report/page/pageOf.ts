@@ -20,7 +20,7 @@ import { targetSentence } from './targetWords'
  * The page of one study: everything that is shown, as plain data. Pure; the same result gives the same page.
  * `file` is the study as it was typed: values in other units than the core's are echoed from it.
  */
-export function pageOf(result: StudyResult, file: TypedStudy): PageView {
+export function pageOf(result: StudyResult, file?: TypedStudy): PageView {
   const { study } = result
   const showing = showingOf(study)
   const labels = regimenLabels(result.regimens.map(({ name }) => name))
@@ -50,7 +50,8 @@ export interface TypedStudy {
   readonly patient: object
 }
 
-function typedValue(file: TypedStudy, path: string, name: string): Quantity | undefined {
+function typedValue(file: TypedStudy | undefined, path: string, name: string): Quantity | undefined {
+  if (file === undefined) return undefined
   const changes = (file.patient as { readonly changes?: readonly object[] }).changes ?? []
   const position = /^patient\.changes\[(\d+)\]$/.exec(path)?.[1]
   const place = position === undefined ? file.patient : changes[Number(position)]
