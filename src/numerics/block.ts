@@ -10,6 +10,8 @@ export interface Block {
   readonly between: readonly number[]
   /** All that leaves each member, to the other members and beyond, to twice the working precision. */
   readonly outflows: readonly DoubleDouble[]
+  /** What leaves each member for other blocks or the body's outside. */
+  readonly beyond: readonly DoubleDouble[]
   /** Nothing leaves the block. */
   readonly closed: boolean
 }
@@ -19,19 +21,20 @@ export function blocksOf(rates: Rates): readonly Block[] {
   return stronglyConnected(rates).map((members) => {
     const inside = new Set(members)
     const between = members.flatMap((i) => members.map((j) => rates.between[i * rates.size + j]))
-    const outflows = members.map((j) => exactOutflow(rates, j))
+    const outflows = members.map((j) => exactOutflow(rates, j, () => true))
+    const beyond = members.map((j) => exactOutflow(rates, j, (i) => !inside.has(i)))
     const closed = members.every((j) => {
       for (let i = 0; i < rates.size; i++) if (!inside.has(i) && rates.between[i * rates.size + j] > 0) return false
       return rates.out[j] === 0
     })
-    return { members, between, outflows, closed }
+    return { members, between, outflows, beyond, closed }
   })
 }
 
-/** Everything that leaves compartment j per unit of time, to twice the working precision. */
-function exactOutflow(rates: Rates, j: number): DoubleDouble {
+/** What leaves compartment j, out of the body and to some compartments, per unit of time, to twice the working precision. */
+function exactOutflow(rates: Rates, j: number, to: (i: number) => boolean): DoubleDouble {
   let sum = exactly(rates.out[j])
-  for (let i = 0; i < rates.size; i++) sum = plus(sum, exactly(rates.between[i * rates.size + j]))
+  for (let i = 0; i < rates.size; i++) if (to(i)) sum = plus(sum, exactly(rates.between[i * rates.size + j]))
   return sum
 }
 

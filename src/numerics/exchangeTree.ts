@@ -6,11 +6,13 @@ const NARROWEST = 1e-31
 /** Eigenvalues nearer than this, relatively, are one: far below the rounding of the rates, far above that of the count. */
 const ONE = 1e-27
 
-/** A member, the member before it on the way from the first, and the product of the rates there and back. */
+/** A member, the member before it on the way from the first, and the rates between the two. */
 interface Branch {
   readonly member: number
   readonly parent: number
+  /** From the member before it, and back to it. */
   readonly there: DoubleDouble
+  readonly back: DoubleDouble
 }
 
 /**
@@ -29,11 +31,11 @@ export function branchesOf(block: Block): readonly Branch[] | undefined {
     }
   }
   if (arrows !== 2 * (n - 1)) return undefined
-  const branches: Branch[] = [{ member: 0, parent: -1, there: ZERO }]
+  const branches: Branch[] = [{ member: 0, parent: -1, there: ZERO, back: ZERO }]
   for (const { member, parent } of branches) {
     for (let i = 0; i < n; i++) {
       if (i === parent || !(rate(i, member) > 0)) continue
-      branches.push({ member: i, parent: member, there: times(exactly(rate(i, member)), exactly(rate(member, i))) })
+      branches.push({ member: i, parent: member, there: exactly(rate(i, member)), back: exactly(rate(member, i)) })
     }
   }
   return branches
@@ -59,6 +61,8 @@ export function treeEigenvalues(block: Block, branches: readonly Branch[]): read
     let high = top
     while (rounded(minus(high, low)) > NARROWEST * rounded(high)) {
       const middle = times(plus(low, high), exactly(0.5))
+      // Near the smallest numbers there is nothing between the two long before their digits are used up.
+      if (!(rounded(minus(middle, low)) > 0 && rounded(minus(high, middle)) > 0)) break
       if (countBelow(block, branches, middle) > below) high = middle
       else low = middle
     }
@@ -71,17 +75,20 @@ export function treeEigenvalues(block: Block, branches: readonly Branch[]): read
   return found
 }
 
-/** How many eigenvalues lie below x: negative pivots of the elimination from the leaves to the first member. */
+/**
+ * How many eigenvalues lie below x: negative pivots of the elimination from the leaves to the first member. What is kept
+ * of a pivot is its excess over the rate back to the parent, so that a slow way out keeps its digits beside fast exchanges.
+ */
 function countBelow(block: Block, branches: readonly Branch[], x: DoubleDouble): number {
-  const pivots = block.outflows.map((outflow) => minus(outflow, x))
+  const excess = block.beyond.map((beyond) => minus(beyond, x))
   let count = 0
   for (let b = branches.length - 1; b >= 0; b--) {
-    const { member, parent, there } = branches[b]
-    let pivot = pivots[member]
+    const { member, parent, there, back } = branches[b]
+    let pivot = plus(back, excess[member])
     // A pivot of exactly 0 stands for one just above: x is taken a hair lower.
     if (rounded(pivot) === 0) pivot = exactly(1e-40 * rounded(x))
     if (rounded(pivot) < 0) count++
-    if (parent >= 0) pivots[parent] = minus(pivots[parent], over(there, pivot))
+    if (parent >= 0) excess[parent] = plus(excess[parent], over(times(there, excess[member]), pivot))
   }
   return count
 }

@@ -50,6 +50,32 @@ test('a compartment that drug does not come back to has exactly its outflow as e
   expect(found).toContain(outflow(rates, 3))
 })
 
+// The slow eigenvalue of a closed exchange with a way out e that is ever smaller is e x the share of the drug that is in
+// the compartment with the way out: first order in e / rates, and exact to 15 digits from 1e-16 on.
+test.each([1e-17, 1e-20, 1e-30, 1e-100, 1e-300])('a way out of %s beside exchanges near 1 keeps its digits', (out) => {
+  const two = compartments(
+    2,
+    [
+      [0, 1, 0.45],
+      [1, 0, 0.25]
+    ],
+    [[0, out]]
+  )
+  expectWithin(spectrum(two)[1].rate, (out * 0.25) / 0.7, { relative: 1e-14 })
+  const chain = compartments(
+    3,
+    [
+      [0, 1, 0.5],
+      [1, 0, 0.25],
+      [1, 2, 3],
+      [2, 1, 1.5]
+    ],
+    [[2, out]]
+  )
+  // Amounts at rest 1 : 2 : 4.
+  expectWithin(spectrum(chain)[2].rate, (out * 4) / 7, { relative: 1e-14 })
+})
+
 test('two compartments: K15, Bourne, A First Course in Pharmacokinetics, self-test "micro to macro"', () => {
   const [fast, slow] = spectrum(
     compartments(
