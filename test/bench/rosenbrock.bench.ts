@@ -1,5 +1,6 @@
 import { execFileSync } from 'node:child_process'
 import { existsSync, mkdirSync, writeFileSync } from 'node:fs'
+import { fileURLToPath } from 'node:url'
 import { RODAS5P } from '../../src/numerics/rodas5p'
 import { Integrator } from '../../src/pk/integrate'
 import { buildPeer, pythonWithScipy } from './peers'
@@ -9,13 +10,21 @@ import { Dosed, type DosedProblem, errorOf, SATURABLE, TARGET_MEDIATED } from '.
 /**
  * Time of one solution at equal achieved error: every method is run over a ladder of tolerances, the fastest that reaches the
  * error is kept, and the kept ones take turns; the least disturbed of the rounds counts. Processor time throughout,
- * which other work on the machine moves less than the clock on the wall.
+ * which other work on the machine moves less than the clock on the wall. Every method has a process of its own, ours
+ * too: it is warmed up first, as a worker is.
  */
-const ROUNDS = 7
+const ROUNDS = 5
 const ERRORS = [1e-4, 1e-6, 1e-8]
 const LADDER = Array.from({ length: 19 }, (_, k) => 10 ** (-3 - k / 2))
-/** Time spent on one measurement. */
-const SLICE = 10_000
+/** Microseconds: of one measurement, and of warming up. */
+const SLICE = 15_000
+const WARMING = 200_000
+
+interface Method {
+  readonly name: string
+  readonly command: string
+  readonly words: readonly string[]
+}
 
 interface Solution {
   /** Microseconds. */
@@ -23,59 +32,54 @@ interface Solution {
   readonly ends: readonly number[]
 }
 
-interface Method {
-  readonly name: string
-  run(problem: DosedProblem, relative: number, repeats: number): Solution
+function run({ command, words }: Method, problem: DosedProblem, relative: number, repeats: number): Solution {
+  const given = [...words, problem.name, String(relative), String(repeats)]
+  const [time, ...ends] = execFileSync(command, given, { encoding: 'utf8' }).trim().split(/\s+/).map(Number)
+  return { time, ends }
 }
 
-function timed(repeats: number, solve: () => number[]): Solution {
+/** What a process of ours does: as the peers, print microseconds a solution and what is compared. */
+function solveHere(kind: string, name: string, relative: number, repeats: number): void {
+  const problem = name === SATURABLE.name ? SATURABLE : TARGET_MEDIATED
+  const solve = kind === 'engine' ? engine(problem, relative) : bare(problem, relative)
+  const spent = (since: NodeJS.CpuUsage): number => {
+    const { user, system } = process.cpuUsage(since)
+    return user + system
+  }
+  const begun = process.cpuUsage()
+  while (spent(begun) < WARMING) solve()
   const start = process.cpuUsage()
   let ends: number[] = []
   for (let k = 0; k < repeats; k++) ends = solve()
-  const { user, system } = process.cpuUsage(start)
-  return { time: (user + system) / repeats, ends }
+  console.log([spent(start) / repeats, ...ends].join(' '))
 }
 
-const ours: Method = {
-  name: 'Rodas5P, JavaScript',
-  run(problem, relative, repeats) {
-    const dosed = new Dosed(problem, relative)
-    return timed(repeats, () => dosed.solve())
-  }
+function bare(problem: DosedProblem, relative: number): () => number[] {
+  const dosed = new Dosed(problem, relative)
+  return () => dosed.solve()
 }
 
-const engine: Method = {
-  name: 'engine, with area and eliminated amount',
-  run(problem, relative, repeats) {
-    const integrator = new Integrator({ relative, floor: 1e-3 })
-    return timed(repeats, () => integratedEnds(problem, integrator))
-  }
-}
-
-function program(name: string, command: string, words: readonly string[] = []): Method {
-  return {
-    name,
-    run(problem, relative, repeats) {
-      const given = [...words, problem.name, String(relative), String(repeats)]
-      const [time, ...ends] = execFileSync(command, given, { encoding: 'utf8' }).trim().split(/\s+/).map(Number)
-      return { time, ends }
-    }
-  }
+function engine(problem: DosedProblem, relative: number): () => number[] {
+  const integrator = new Integrator({ relative, floor: 1e-3 })
+  return () => integratedEnds(problem, integrator)
 }
 
 /** The methods that this machine has; a line for each that it has not. */
 function methods(): Method[] {
-  const found = [ours, engine]
+  const self = fileURLToPath(import.meta.url)
+  const found: Method[] = [
+    { name: 'Rodas5P, JavaScript', command: process.execPath, words: [self, 'solve', 'bare'] },
+    { name: 'engine, with area and eliminated amount', command: process.execPath, words: [self, 'solve', 'engine'] }
+  ]
+  const add = (name: string, command: string | undefined, words: readonly string[] = []): void => {
+    if (command) found.push({ name, command, words })
+  }
   writeCoefficients()
-  const c = buildPeer('rodas5p.c', 'rodas5p', [])
-  if (c) found.push(program('the same in C', c))
+  add('the same in C', buildPeer('rodas5p.c', 'rodas5p', []))
   const libraries = ['cvode', 'nvecserial', 'sunmatrixdense', 'sunlinsoldense'].map((name) => `-lsundials_${name}`)
-  const cvode = buildPeer('cvode_nonlinear.c', 'cvode_nonlinear', libraries)
-  if (cvode) found.push(program('CVODE', cvode))
-  const lsoda = lsodaKernel()
-  if (lsoda) found.push(program('LSODA kernel', lsoda))
-  const python = pythonWithScipy()
-  if (python) found.push(program('SciPy LSODA', python, ['test/bench/peers/lsoda_scipy.py']))
+  add('CVODE', buildPeer('cvode_nonlinear.c', 'cvode_nonlinear', libraries))
+  add('LSODA kernel', lsodaKernel())
+  add('SciPy LSODA', pythonWithScipy(), ['test/bench/peers/lsoda_scipy.py'])
   return found
 }
 
@@ -106,11 +110,10 @@ function writeCoefficients(): void {
 
 /** For each error the tolerance that reaches it in the shortest time. */
 function fastest(method: Method, problem: DosedProblem, exact: readonly number[]): (number | undefined)[] {
-  const tried = LADDER.flatMap((relative) => {
-    const first = method.run(problem, relative, 1)
-    const error = errorOf(problem, first.ends, exact)
-    const { time } = method.run(problem, relative, repeatsFor(first.time))
-    return [{ relative, error, time }]
+  const repeats = method.name.startsWith('SciPy') ? 1 : 10
+  const tried = LADDER.map((relative) => {
+    const { time, ends } = run(method, problem, relative, repeats)
+    return { relative, time, error: errorOf(problem, ends, exact) }
   })
   return ERRORS.map((wanted) => {
     const good = tried.filter(({ error }) => error <= wanted)
@@ -118,35 +121,36 @@ function fastest(method: Method, problem: DosedProblem, exact: readonly number[]
   })
 }
 
-function repeatsFor(time: number): number {
-  return Math.max(1, Math.min(500, Math.ceil(SLICE / time)))
-}
-
 function compare(problem: DosedProblem, all: readonly Method[]): void {
   console.log(`${problem.title}; microseconds a solution (ratio to Rodas5P, JavaScript)`)
   const exact = new Dosed(problem, 1e-13).solve()
   const chosen = all.map((method) => fastest(method, problem, exact))
-  const times = all.map(() => ERRORS.map((): number[] => []))
+  const times = all.map(() => ERRORS.map(() => Number.POSITIVE_INFINITY))
   for (let round = 0; round < ROUNDS; round++) {
-    for (const [e] of ERRORS.entries()) {
-      all.forEach((method, m) => {
+    for (const e of ERRORS.keys()) {
+      for (const [m, method] of all.entries()) {
         const relative = chosen[m][e]
-        if (relative === undefined) return
-        const rough = times[m][e].at(-1) ?? method.run(problem, relative, 2).time
-        times[m][e].push(method.run(problem, relative, repeatsFor(rough)).time)
-      })
+        if (relative === undefined) continue
+        const repeats = Math.max(1, Math.min(500, Math.ceil(SLICE / times[m][e])))
+        times[m][e] = Math.min(times[m][e], run(method, problem, relative, repeats).time)
+      }
     }
   }
   console.log(`  ${'error'.padEnd(40)}${ERRORS.map((error) => String(error).padStart(18)).join('')}`)
-  all.forEach((method, m) => {
-    const cells = ERRORS.map((_, e) => {
-      if (times[m][e].length === 0) return 'not reached'.padStart(18)
-      const time = Math.min(...times[m][e])
-      return `${time.toFixed(0)} (${(time / Math.min(...times[0][e])).toFixed(2)})`.padStart(18)
-    })
+  for (const [m, method] of all.entries()) {
+    const cells = times[m].map((time, e) =>
+      (time < Number.POSITIVE_INFINITY
+        ? `${time.toFixed(0)} (${(time / times[0][e]).toFixed(2)})`
+        : 'not reached'
+      ).padStart(18)
+    )
     console.log(`  ${method.name.padEnd(40)}${cells.join('')}`)
-  })
+  }
 }
 
-const all = methods()
-for (const problem of [SATURABLE, TARGET_MEDIATED]) compare(problem, all)
+const [, , verb, kind, name, relative, repeats] = process.argv
+if (verb === 'solve') solveHere(kind, name, Number(relative), Number(repeats))
+else {
+  const all = methods()
+  for (const problem of [SATURABLE, TARGET_MEDIATED]) compare(problem, all)
+}
