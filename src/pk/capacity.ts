@@ -1,3 +1,4 @@
+import { factorInto, solveInto } from '../numerics/lu'
 import type { ReadonlyVector } from '../numerics/vector'
 import type { MilligramsPerHour } from '../units/canonical'
 import type { Model, Transfer } from './model'
@@ -22,33 +23,101 @@ const ROUNDING = 1e-12
  * compartment, after product fraction and bioavailability.
  *
  * Maximum flow and minimum cut [Ford & Fulkerson 1956, Can. J. Math. 8:399, from memory]: first-order movements carry
- * anything, a saturable one its maximum rate, a binding what is produced of its target. The smallest cut for rates that
- * cannot leave gives a limit; rates at that limit give the next, until all leaves.
+ * anything, a saturable one its maximum rate, a binding what is produced of its target; what enters a compartment that
+ * first-order movements alone lead out of goes on in fixed parts. The smallest cut for rates that cannot leave gives a
+ * limit; rates at that limit give the next, until all leaves.
  */
 export function capacityOf(model: Model, transfers: readonly Transfer[], inputs: ReadonlyVector): Capacity | undefined {
   const limits = limitsOf(model, transfers)
   const produced = producedIn(model, transfers)
   const size = model.compartments.length
+  const goesOn = passedOn(model, transfers, inputs)
   const finite = limits.reduce((sum, limit) => sum + (limit < Number.POSITIVE_INFINITY ? limit : 0), 0)
-  const least = Math.min(...Array.from(inputs).filter((rate) => rate > 0))
+  const least = Math.min(...goesOn.map(({ rate }) => rate).filter((rate) => rate > 0))
   if (!(least < Number.POSITIVE_INFINITY)) return undefined
   let scale = (2 * (finite + produced.reduce((sum, rate) => sum + rate, 0))) / least + 1
   let found: Capacity | undefined
   // Each cut leaves out at least one dosed compartment of the one before, or is the last.
   for (let round = 0; round <= size; round++) {
-    const supply = Array.from({ length: size }, (_, i) => produced[i] + scale * inputs[i])
+    const supply = Array.from({ length: size }, (_, i) => produced[i] + scale * goesOn[i].rate)
     const cut = smallestCut(limits, supply)
     if (cut === undefined) return found
-    const compartments = cut.side.filter((i) => inputs[i] > 0)
+    const compartments = [...new Set(cut.side.flatMap((i) => goesOn[i].from))].sort((a, b) => a - b)
     const doseRate = compartments.reduce((sum, i) => sum + inputs[i], 0)
+    const supplied = cut.side.reduce((sum, i) => sum + goesOn[i].rate, 0)
     // What the body makes by itself has no way out: nothing is left for a dose.
     if (!(doseRate > 0)) return { rate: 0, doseRate: 0, compartments: [] }
-    const rate = Math.max(0, cut.limit - cut.side.reduce((sum, i) => sum + produced[i], 0))
+    const left = Math.max(0, cut.limit - cut.side.reduce((sum, i) => sum + produced[i], 0))
+    // Where all that is given comes to the limit, the limit is the capacity to the last digit.
+    const rate = supplied === doseRate ? left : (left / supplied) * doseRate
     found = { rate, doseRate, compartments }
     if (rate === 0) return found
-    scale = rate / doseRate
+    scale = left / supplied
   }
   return found
+}
+
+/** What comes to a compartment of all that is given, and the dosed compartments that it comes from. */
+interface PassedOn {
+  readonly rate: MilligramsPerHour
+  readonly from: readonly number[]
+}
+
+/**
+ * Inputs at the first compartment on their way that something else than first-order movements leads out of. What leaves
+ * the body before is in none.
+ */
+function passedOn(model: Model, transfers: readonly Transfer[], inputs: ReadonlyVector): PassedOn[] {
+  const size = model.compartments.length
+  const isWay = model.compartments.map((_, i) => transfers.some((t) => t.kind === 'first-order' && t.from === i))
+  for (const transfer of transfers) {
+    if (transfer.kind === 'saturable') isWay[transfer.from] = false
+    if (transfer.kind === 'binding') {
+      for (const place of [transfer.drug, transfer.target, transfer.complex]) isWay[place] = false
+    }
+  }
+  const rates = Array.from({ length: size }, (_, i) => (isWay[i] ? 0 : inputs[i]))
+  const from = rates.map((rate, i) => (rate > 0 ? [i] : []))
+  for (let start = 0; start < size; start++) {
+    if (!(isWay[start] && inputs[start] > 0)) continue
+    const throughput = amountsOnTheWay(transfers, isWay, start, inputs[start])
+    if (throughput === undefined) {
+      rates[start] += inputs[start]
+      from[start].push(start)
+      continue
+    }
+    for (const transfer of transfers) {
+      if (transfer.kind !== 'first-order' || transfer.to === 'eliminated') continue
+      const flow = transfer.rate * throughput[transfer.from]
+      if (isWay[transfer.to] || !(flow > 0)) continue
+      rates[transfer.to] += flow
+      if (!from[transfer.to].includes(start)) from[transfer.to].push(start)
+    }
+  }
+  return rates.map((rate, i) => ({ rate, from: from[i] }))
+}
+
+/** Amounts in the compartments on the way that hold an input; undefined where they keep all of it. */
+function amountsOnTheWay(
+  transfers: readonly Transfer[],
+  isWay: readonly boolean[],
+  start: number,
+  input: MilligramsPerHour
+): Float64Array | undefined {
+  const n = isWay.length
+  const matrix = new Float64Array(n * n)
+  for (let i = 0; i < n; i++) if (!isWay[i]) matrix[i * n + i] = 1
+  for (const transfer of transfers) {
+    if (transfer.kind !== 'first-order' || !isWay[transfer.from]) continue
+    matrix[transfer.from * n + transfer.from] += transfer.rate
+    if (transfer.to !== 'eliminated' && isWay[transfer.to]) matrix[transfer.to * n + transfer.from] -= transfer.rate
+  }
+  const pivots = new Int32Array(n)
+  const amounts = new Float64Array(n)
+  amounts[start] = input
+  if (!factorInto(matrix, n, n, pivots)) return undefined
+  solveInto(matrix, n, n, pivots, amounts)
+  return amounts
 }
 
 /** What of drug is produced in each compartment. */

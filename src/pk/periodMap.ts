@@ -20,6 +20,8 @@ export class PeriodMap {
   readonly #isDrug: readonly boolean[]
   readonly #integrators = new Map<number, Integrator>()
   readonly #state: Float64Array
+  /** All drug that enters in a period. */
+  readonly #entered: Milligrams
   /** Periods that were integrated so far. */
   periods = 0
 
@@ -40,6 +42,11 @@ export class PeriodMap {
     this.#places = reached.flatMap((holds, i) => (holds && !complexes.has(i) ? [i] : []))
     this.#isDrug = this.#places.map((i) => model.compartments[i].holds === 'drug')
     this.#state = new Float64Array(this.#flux.size)
+    this.#entered = segments.reduce(
+      (sum, { boluses, inputs, duration }) =>
+        model.compartments.reduce((all, _, i) => all + boluses[i] + inputs[i] * duration, sum),
+      0
+    )
     this.size = this.#places.length
   }
 
@@ -70,9 +77,12 @@ export class PeriodMap {
     return this.coordinates(integrator.state.amounts).map((value) => Math.max(0, value))
   }
 
-  /** By how much each coordinate may differ before it counts as different: its own size, or a part of all of its kind. */
+  /**
+   * By how much each coordinate may differ before it counts as different: its own size, or a part of all of its kind, drug
+   * that enters in the period included, of which next to nothing may be left at its end.
+   */
   scales(coordinates: ReadonlyVector, part: number): Float64Array {
-    let drug: Milligrams = 0
+    let drug = this.#entered
     let target: Milligrams = 0
     for (let p = 0; p < this.size; p++) {
       if (this.#isDrug[p]) drug += coordinates[p]

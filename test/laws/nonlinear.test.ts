@@ -1,8 +1,12 @@
 import { expect, test } from 'vitest'
 import { extremes, timeAbove } from '../../src/pk/curve'
-import { integrate } from '../../src/pk/integrate'
+import type { Dose } from '../../src/pk/dose'
+import { integrate, stateAfter } from '../../src/pk/integrate'
 import type { Model, Transfer } from '../../src/pk/model'
+import { OperatorStore } from '../../src/pk/operatorStore'
+import { periodicSegments } from '../../src/pk/periodicSegments'
 import type { Segment } from '../../src/pk/segment'
+import { periodicSolution } from '../../src/pk/steadySolution'
 import { expectWithin } from '../expectWithin'
 import { Random } from './random'
 import { hourly, type RandomStudy } from './randomModel'
@@ -335,4 +339,39 @@ test('times, amounts and volumes x powers of 2 change no bit, by other factors n
     expectRows(rowsInUnits(study, { time: 64, amount: 1024, volume: 2 }), rows, 0, `seed ${seed}`)
     expectRows(rowsInUnits(study, { time: 60, amount: 1000, volume: 1000 }), rows, MOVED, `seed ${seed}`)
   }
+})
+
+test('a periodic state comes back after its period, or its dose rate is not below the capacity', () => {
+  let solved = 0
+  for (const seed of seeds(9801, 60)) {
+    const random = new Random(seed)
+    const { model } = randomNonlinear(random).stretches[0].subject
+    const period = random.logBetween(0.5, 200)
+    const places = model.compartments.flatMap(({ name, holds }, i) =>
+      holds === 'drug' && name !== 'complex' ? [i] : []
+    )
+    const doses = Array.from({ length: random.whole(1, 3) }, (): Dose => {
+      const start = random.between(0, 2 * period)
+      const into = random.pick(places)
+      const amount = random.logBetween(1, 1000)
+      if (random.chance(0.5)) return { kind: 'bolus', start, into, amount }
+      return { kind: 'infusion', start, into, amount, duration: period * random.logBetween(0.01, 5) }
+    })
+    const segments = periodicSegments({ model, period, doses, sessions: [] })
+    const solution = periodicSolution(segments, new OperatorStore())
+    if (solution.kind === 'none') {
+      expect(solution.why, `seed ${seed}`).toMatch(/^no steady state: the dose rate .* is above the capacity /)
+      continue
+    }
+    solved += 1
+    const { state, convergence } = solution
+    const entered = doses.reduce((sum, { amount }) => sum + amount, 0)
+    const after = stateAfter(segments, state, { relative: 1e-12, floor: 1e-6 })
+    for (const i of places) {
+      const amount = state.amounts[i]
+      expectWithin(after.amounts[i], amount, { absolute: 1e-8 * Math.max(amount, 1e-4 * entered) }, `seed ${seed}`)
+    }
+    expect(convergence?.periods, `seed ${seed}`).toBeLessThan(40)
+  }
+  expect(solved).toBeGreaterThan(25)
 })

@@ -61,6 +61,13 @@ describe('capacity', () => {
     expect(capacity(model, [1, 1, 0])).toEqual([10, 2, [0, 1]])
   })
 
+  test('counts what a depot passes on where part of the dose leaves before', () => {
+    const model = three([arrow(0, 1, 9), arrow(0, 'eliminated', 1), path(1, 'eliminated', 9)])
+    const found = capacityOf(model, model.transfers, [5, 0, 0])
+    expectWithin(found?.rate ?? Number.NaN, 10, { relative: 1e-14 })
+    expect([found?.doseRate, found?.compartments]).toEqual([5, [0]])
+  })
+
   test('does not count a saturable path that leads to no way out, nor one that leads back', () => {
     const model = three([path(0, 1, 100), path(1, 2, 50), path(2, 1, 50), path(1, 'eliminated', 4)])
     expect(capacity(model, [1, 0, 0])).toEqual([4, 1, [0]])
