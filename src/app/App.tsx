@@ -9,6 +9,8 @@ import { Header } from './Header'
 import { IssueList } from './IssueList'
 import { Note } from './Note'
 import { PhasesCard } from './PhasesCard'
+import { SaturationCard } from './SaturationCard'
+import { SecondWitness } from './SecondWitness'
 import { firstStudy } from './shippedStudies'
 import type { StudyDesk } from './studyDesk'
 
@@ -35,8 +37,12 @@ export function App(props: { desk: StudyDesk }) {
               <ExposureCard desk={desk} grids={page().exposure} />
               <EstimatesCard estimates={page().note.estimates} />
               <PhasesCard desk={desk} phases={page().phases} />
+              <SaturationCard desk={desk} />
               <ConcentrationTable desk={desk} table={page().table} />
-              <footer class="provenance">{page().provenance}</footer>
+              <footer class="provenance">
+                <SecondWitness desk={desk} />
+                <p class="witness">{page().provenance}</p>
+              </footer>
             </div>
           )}
         </Show>

@@ -1,6 +1,6 @@
 import type { Issue } from '../pk/issue'
 import { CAUTION } from '../report/caution'
-import { agreementInWords, NOT_PROVED } from '../report/confirmationText'
+import { confirmationSentence } from '../report/confirmationText'
 import { type CheckedValue, checkModel, failureInWords } from '../study/checkedModel'
 import { type Confirmation, confirm, worstOf } from '../study/confirmation'
 import { readModel } from '../study/file/readModel'
@@ -140,12 +140,7 @@ function plainText(found: Findings): string {
     )
   }
   if (found.standing !== undefined) lines.push(`The model is ${found.standing}.`)
-  if (found.witness !== undefined) {
-    const { at, regimen, massBalance } = found.witness
-    lines.push(
-      `Largest difference at ${at} h in "${regimen}": ${agreementInWords(found.witness)}; mass balance ${massBalance.toExponential(1)}. ${NOT_PROVED}`
-    )
-  }
+  if (found.witness !== undefined) lines.push(confirmationSentence([found.witness]))
   lines.push(...found.cautions.map((caution) => `Caution: ${caution}.`), CAUTION)
   return `${lines.join('\n')}\n`
 }

@@ -1,4 +1,4 @@
-import type { Confirmation } from '../study/confirmation'
+import { type Confirmation, worstOf } from '../study/confirmation'
 
 /** What agreement of two methods does not prove; it stands wherever the agreement does. */
 export const NOT_PROVED =
@@ -13,4 +13,12 @@ export function agreementInWords(confirmation: Confirmation): string {
   const exponent = Math.ceil(-Math.log10(difference) - 1e-12)
   const parts = Math.ceil(difference * 10 ** exponent)
   return `the arithmetic is confirmed ${how} (${parts} in 10^${exponent})`
+}
+
+/** The worst of the confirmations as a sentence, with where it stands and what it does not prove. */
+export function confirmationSentence(confirmations: readonly Confirmation[]): string {
+  const worst = worstOf(confirmations)
+  if (worst === undefined) return `There is nothing to compare. ${NOT_PROVED}`
+  const { at, regimen, massBalance } = worst
+  return `Largest difference at ${at} h in "${regimen}": ${agreementInWords(worst)}; mass balance ${massBalance.toExponential(1)}. ${NOT_PROVED}`
 }

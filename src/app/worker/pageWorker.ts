@@ -1,7 +1,10 @@
 import { expose } from 'comlink'
+import { confirmationSentence } from '../../report/confirmationText'
 import type { PageView } from '../../report/page/page'
 import { pageOf } from '../../report/page/pageOf'
+import { saturationView } from '../../report/page/saturationView'
 import { TableRows } from '../../report/page/tableView'
+import { confirm } from '../../study/confirmation'
 import { readStudy } from '../../study/file/readStudy'
 import type { StudyResult } from '../../study/result'
 import { runStudy } from '../../study/run'
@@ -37,6 +40,8 @@ function current(): Shown {
 const worker: PageWorker = {
   open,
   rows: async ({ regimen, from, count }: RowsAsked) => current().rows.rows(regimen, from, count),
+  saturation: async () => saturationView(current().result),
+  confirm: async () => confirmationSentence(confirm(current().result)),
   download: async (what: Download) => tableFiles(what, current().result, current().name)
 }
 

@@ -1,5 +1,6 @@
 import type { Issue } from '../../pk/issue'
 import type { PageView } from '../../report/page/page'
+import type { SaturationView } from '../../report/page/saturationView'
 
 /** What became of a file: a page, or everything that is wrong with it. */
 export type Outcome =
@@ -30,6 +31,10 @@ export interface PageWorker {
   open(file: Blob, name: string): Promise<Outcome>
   /** Rows of the concentration table as the screen shows them. */
   rows(asked: RowsAsked): Promise<readonly (readonly string[])[]>
+  /** What saturation makes of the dose; undefined for a linear model. */
+  saturation(): Promise<SaturationView | undefined>
+  /** How far a second computation agrees, in a sentence with what that does not prove. */
+  confirm(): Promise<string>
   /** A table in full precision, as the command line writes it, and its metadata. */
   download(what: Download): Promise<readonly NamedFile[]>
 }
