@@ -48,6 +48,13 @@ const STEADY_STATE = [
   'timeInWindow'
 ]
 
+/** Whether the model of a study has elimination or binding that saturates. */
+function saturates(name: string): boolean {
+  const { model } = JSON.parse(readFileSync(`${FOLDER}/${name}`, 'utf8'))
+  const { transfers } = JSON.parse(readFileSync(`models/drugs/${model}.json`, 'utf8'))
+  return transfers.some(({ kind }: { kind: string }) => kind === 'saturable' || kind === 'binding')
+}
+
 describe.each(STUDIES)('%s', (name) => {
   const study = `${FOLDER}/${name}`
 
@@ -82,10 +89,15 @@ describe.each(STUDIES)('%s', (name) => {
     }
   })
 
-  test('phases --json has every fixed key; shares of the area sum to 1', () => {
+  test('phases --json has every fixed key; shares of the area sum to 1 where the model is linear', () => {
     const { stretches, distribution } = document('phases', study)
     for (const stretch of stretches) {
       expectReasons(stretch, ['rulingPhase', 'stiffness', 'longestExplicitStep_h', 'vss_L', 'mrt_h', 'clearance_L_h'])
+      if (saturates(name)) {
+        expect(stretch.phases).toEqual([])
+        expect(stretch.why.stiffness).toMatch(/^the model is not linear/)
+        continue
+      }
       const shares = stretch.phases.map((phase: { shareOfAuc: number }) => phase.shareOfAuc)
       expectWithin(
         shares.reduce((sum: number, share: number) => sum + share, 0),
@@ -101,12 +113,13 @@ describe.each(STUDIES)('%s', (name) => {
     }
   })
 
-  test('check --json is valid, its checks pass and two methods agree within 1e-9', () => {
+  test('check --json is valid, its checks pass and two methods agree', () => {
     const found = document('check', study)
     expect(found.valid).toBe(true)
     expect(found.problems).toEqual([])
     for (const check of found.checks) expect(check.pass, check.what).toBe(true)
-    expect(found.witness.largestRelativeDifference).toBeLessThan(1e-9)
+    // Of a model that saturates the witness is the working tolerance, 1e-8 a step, against a hundredth of it.
+    expect(found.witness.largestRelativeDifference).toBeLessThan(saturates(name) ? 1e-7 : 1e-9)
     expect(found.witness.massBalance).toBeLessThan(1e-12)
   })
 
@@ -120,6 +133,7 @@ describe.each(STUDIES)('%s', (name) => {
 test('a study shorter than 24 h has no highest running AUC24, and its document says why', () => {
   const study = JSON.parse(readFileSync(STUDY, 'utf8'))
   study.sampling.until = { value: 20, unit: 'h' }
+  for (const { doses } of study.regimens) for (const dose of doses) delete dose.exceptions
   const { status, out } = phasewise(['exposure', '-', '--json'], JSON.stringify(study))
   expect(status).toBe(0)
   const [regimen] = JSON.parse(out).regimens
