@@ -11,7 +11,8 @@ import { Words } from './Words'
 export function SaturationCard(props: { desk: StudyDesk }) {
   const [view] = createResource(props.desk.edition, () => props.desk.worker.saturation())
   return (
-    <Show when={view.latest}>
+    // While the next study is computed, the last one's answer is not shown beside it.
+    <Show when={view.state === 'ready' ? view() : undefined}>
       {(shown) => (
         <section class="saturation card" aria-labelledby="saturation-title">
           <h2 id="saturation-title">Saturation</h2>

@@ -7,7 +7,7 @@ import './look/print.css'
 import { createStudyDesk } from './studyDesk'
 import { startWorker } from './worker/client'
 
-const desk = createStudyDesk(startWorker())
+const desk = createStudyDesk(startWorker((message) => desk.refuse('The program', `it stopped: ${message}`)))
 const root = document.getElementById('app')
 if (root === null) throw new RangeError('the page has no #app')
 render(() => <App desk={desk} />, root)

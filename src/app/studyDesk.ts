@@ -18,7 +18,7 @@ export interface Refusal {
 
 /**
  * The study on the desk. A result is shown only with the study that it came from: a file that is refused leaves the
- * last good page in place, marked as such, and an answer to an older file than the last one opened is dropped.
+ * last good page in place, marked as such.
  */
 export function createStudyDesk(worker: PageWorker) {
   const [shown, setShown] = createStore<{ page?: PageView }>({})
@@ -27,26 +27,26 @@ export function createStudyDesk(worker: PageWorker) {
   const [busy, setBusy] = createSignal(false)
   const [edition, setEdition] = createSignal(0)
   let latest = 0
+  let last: Promise<void> = Promise.resolve()
 
-  async function open(next: StudyFile): Promise<void> {
+  /** Files are opened one after another, so that the worker always holds the study that the page shows; one that another overtook is left out. */
+  function open(next: StudyFile): Promise<void> {
     const turn = ++latest
     setBusy(true)
-    const outcome = await worker.open(next.content, next.name).catch((failure: unknown) => ({
-      ok: false as const,
-      issues: [
-        { path: '', message: `the program failed on this file, which is a fault of ours: ${messageOf(failure)}` }
-      ]
-    }))
-    if (turn !== latest) return
-    batch(() => {
-      setBusy(false)
-      if (outcome.ok) {
-        setRefusal(undefined)
-        setFile(next)
-        setShown('page', reconcile(outcome.page, { merge: true }))
-        setEdition((count) => count + 1)
-      } else setRefusal({ name: next.name, issues: outcome.issues })
+    last = last.then(async () => {
+      if (turn !== latest) return
+      const outcome = await worker.open(next.content, next.name).catch(faultOfOurs)
+      batch(() => {
+        setBusy(turn !== latest)
+        if (outcome.ok) {
+          setRefusal(undefined)
+          setFile(next)
+          setShown('page', reconcile(outcome.page, { merge: true }))
+          setEdition((count) => count + 1)
+        } else setRefusal({ name: next.name, issues: outcome.issues })
+      })
     })
+    return last
   }
 
   return {
@@ -65,6 +65,10 @@ export function createStudyDesk(worker: PageWorker) {
 
 export type StudyDesk = ReturnType<typeof createStudyDesk>
 
-function messageOf(failure: unknown): string {
-  return failure instanceof Error ? failure.message : String(failure)
+function faultOfOurs(failure: unknown): { ok: false; issues: readonly Issue[] } {
+  const said = failure instanceof Error ? failure.message : String(failure)
+  return {
+    ok: false,
+    issues: [{ path: '', message: `the program failed on this file, which is a fault of ours: ${said}` }]
+  }
 }
