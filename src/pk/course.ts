@@ -107,6 +107,12 @@ function run(request: CourseRequest, end: Hours, earlier?: Course): CourseOutcom
     until: end
   })
   const method = methodFor(segments)
+  const solved = solvedOrFailed(() =>
+    earlier !== undefined && method === 'integrated'
+      ? continuedTrajectory(segments, earlier.trajectory)
+      : trajectoryOf(segments, beginning.state, store)
+  )
+  if (typeof solved === 'string') return { ok: false, issues: [{ path, message: `cannot be computed: ${solved}` }] }
   const course: Course = {
     prescription,
     administrations: given,
@@ -114,10 +120,7 @@ function run(request: CourseRequest, end: Hours, earlier?: Course): CourseOutcom
     sessions,
     segments,
     initial: beginning.state,
-    trajectory:
-      earlier !== undefined && method === 'integrated'
-        ? continuedTrajectory(segments, earlier.trajectory)
-        : trajectoryOf(segments, beginning.state, store),
+    trajectory: solved,
     method,
     end,
     notes: [...beginning.notes, ...written.notes, ...dosesDuringSessions(prescription.lines, given, sessions)]
@@ -135,5 +138,15 @@ function beginningOf(request: CourseRequest, store: OperatorStore): Beginning {
     if (!(failure instanceof NumericalFailure) || failure.code !== 'no-way-out') throw failure
     const issues = [{ path: `${request.path}.start`, message: failure.message }]
     return { state: emptyState(subject.model), carried: [], issues, notes: [] }
+  }
+}
+
+/** A trajectory, or in words what the numerics could not do on input that is valid. */
+function solvedOrFailed(solve: () => Trajectory): Trajectory | string {
+  try {
+    return solve()
+  } catch (failure) {
+    if (!(failure instanceof NumericalFailure)) throw failure
+    return failure.message
   }
 }

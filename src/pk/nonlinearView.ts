@@ -1,3 +1,4 @@
+import { NumericalFailure } from '../numerics/numericalFailure'
 import type { Hours, MilligramsPerHour } from '../units/canonical'
 import type { Capacity } from './capacity'
 import { changeReached, levelChangeReached, type Present, presentAt, stateBefore } from './changeReached'
@@ -78,6 +79,15 @@ const NO_TOP = 'no target is a window with a high limit'
 
 /** The view of one regimen; undefined for a linear model, in words where nothing repeats at the end. */
 export function nonlinearView(given: NonlinearViewRequest): NonlinearView | string | undefined {
+  try {
+    return viewOf(given)
+  } catch (failure) {
+    if (!(failure instanceof NumericalFailure)) throw failure
+    return `it could not be computed: ${failure.message}`
+  }
+}
+
+function viewOf(given: NonlinearViewRequest): NonlinearView | string | undefined {
   const { course, request, window } = given
   const repeating = repeatingAtEnd(course, request)
   if (repeating.kind === 'none') return course.method === 'exact' ? undefined : repeating.why

@@ -90,7 +90,8 @@ describe('a patient becomes a person per stretch of time', () => {
           numbers: { age: 71, weight: 58, height: 162, serumCreatinine: 1.6 },
           categories: {},
           renalReplacement: 'none'
-        }
+        },
+        typed: { age: q(71, 'a'), weight: q(58, 'kg'), height: q(162, 'cm'), serumCreatinine: q(1.6, 'mg/dL') }
       },
       {
         from: 72,
@@ -100,7 +101,8 @@ describe('a patient becomes a person per stretch of time', () => {
           numbers: { age: 71, weight: 58, height: 162, serumCreatinine: 1.9 },
           categories: {},
           renalReplacement: 'none'
-        }
+        },
+        typed: { serumCreatinine: q(1.9, 'mg/dL') }
       }
     ])
   })
