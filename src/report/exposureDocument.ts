@@ -45,6 +45,7 @@ export const STEADY_STATE_NAMES = {
   reached90: 'reached90_h',
   reached90ByTrough: 'reached90ByTrough_h',
   reached90OfChange: 'reached90OfChange_h',
+  reached90ByLevel: 'reached90ByLevel_h',
   timeInWindow: 'timeInWindow',
   timeAbove: 'timeAbove',
   timeBelow: 'timeBelow'
@@ -61,21 +62,31 @@ export const REGIMEN_NAMES = {
   aucNext24: 'aucNext24_mg_h_L'
 } as const
 
-const RUNNING_AND_REGIMEN_NAMES = { ...REGIMEN_NAMES, highestRunningAuc24: 'highestRunningAuc24' } as const
+/** These and what is a group of its own. */
+const WHOLE_NAMES = {
+  ...REGIMEN_NAMES,
+  highestRunningAuc24: 'highestRunningAuc24',
+  nonlinear: 'nonlinear'
+} as const
+
+const LINEAR = 'the model is linear: doses add up and nothing saturates'
 
 /** `exposure --json`: per regimen its intervals, days, steady state and targets, with a reason for every `null`. */
 export function exposureDocument(result: StudyResult): object {
   const views = nonlinearViews(result)
   return {
-    regimens: result.regimens.map((regimen, i) => ({
-      ...regimenDocument(regimen),
-      nonlinear: nonlinearDocument(views[i])
-    }))
+    regimens: result.regimens.map((regimen, i) => regimenDocument(regimen, nonlinearDocument(views[i])))
   }
 }
 
-function regimenDocument(regimen: RegimenResult): object {
+function regimenDocument(regimen: RegimenResult, nonlinear: object | undefined): object {
   const { exposure } = regimen
+  const whole = {
+    ...exposure,
+    highestRunningAuc24: runningDocument(exposure),
+    nonlinear,
+    why: { ...exposure.why, ...(nonlinear === undefined && { nonlinear: LINEAR }) }
+  }
   return {
     name: regimen.name,
     intervals: exposure.intervals.map((interval) => ({
@@ -86,7 +97,7 @@ function regimenDocument(regimen: RegimenResult): object {
     })),
     days: exposure.days.map((day) => ({ day: day.day, ...withReasons(day, DAY_NAMES) })),
     steadyState: withReasons(exposure.steadyState, STEADY_STATE_NAMES),
-    ...withReasons({ ...exposure, highestRunningAuc24: runningDocument(exposure) }, RUNNING_AND_REGIMEN_NAMES),
+    ...withReasons(whole, WHOLE_NAMES),
     targets: exposure.targets.map(targetDocument),
     overLimits: regimen.overLimits,
     notes: regimen.notes

@@ -28,6 +28,7 @@ const STEADY_STATE_WORDS: readonly (readonly [SteadyStateName, string])[] = [
   ['reached90', '90 % of steady state reached (AUC)'],
   ['reached90ByTrough', '90 % of steady state reached (trough)'],
   ['reached90OfChange', '90 % of the change of dose reached'],
+  ['reached90ByLevel', '90 % of the constant level reached'],
   ['timeInWindow', 'time in window'],
   ['timeAbove', 'time above window'],
   ['timeBelow', 'time below window']

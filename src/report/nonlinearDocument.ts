@@ -2,9 +2,9 @@ import type { NextStep, NonlinearView } from '../pk/nonlinearView'
 import type { SteadyPoint } from '../pk/steadyScan'
 import { withReasons } from './undefinedValues'
 
-/** The nonlinear view of one regimen as it stands in `exposure --json`; `null` for a linear model. */
-export function nonlinearDocument(view: NonlinearView | string | undefined): object | null {
-  if (view === undefined) return null
+/** The nonlinear view of one regimen as it stands in `exposure --json`; undefined for a linear model. */
+export function nonlinearDocument(view: NonlinearView | string | undefined): object | undefined {
+  if (view === undefined) return undefined
   if (typeof view === 'string') return { why: { nonlinear: view } }
   const { why } = view
   return {
