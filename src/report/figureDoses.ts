@@ -42,7 +42,16 @@ function doseMark(
     const width = Math.max(4, x(dose.to) - left)
     return [{ kind: 'rect', x: left, y: middle - height / 2, width, height, round: 1.5, look, title }]
   }
-  const stem: Shape = { kind: 'rect', x: left - 1, y: middle - height / 2, width: 2, height, round: 0, look, title }
+  const stem: Shape = {
+    kind: 'rect',
+    x: left - 1,
+    y: middle - height / 2,
+    width: 2,
+    height,
+    round: 0,
+    look: `${look} stem`,
+    title
+  }
   if (!headed) return [stem]
   return [
     stem,
