@@ -4,11 +4,16 @@ import { type Confirmation, worstOf } from '../study/confirmation'
 export const NOT_PROVED =
   'This says nothing about how well the model fits this patient; its typical prediction error is not stated by the source.'
 
+const HOW = {
+  'second method': 'by a second method',
+  'closed form': 'by its closed form',
+  'finer tolerance': 'by the same method at a hundredth of its tolerance'
+} as const
+
 /** `the arithmetic is confirmed by a second method (3 in 10^10)`: the largest relative difference, rounded up. */
 export function agreementInWords(confirmation: Confirmation): string {
   const difference = confirmation.largestRelativeDifference
-  const how =
-    confirmation.by === 'second method' ? 'by a second method' : 'by the same method at a hundredth of its tolerance'
+  const how = HOW[confirmation.by]
   if (difference === 0) return `the arithmetic is confirmed ${how}, to the last digit`
   const exponent = Math.ceil(-Math.log10(difference) - 1e-12)
   const parts = Math.ceil(difference * 10 ** exponent)

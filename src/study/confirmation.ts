@@ -1,7 +1,9 @@
+import type { Course } from '../pk/course'
 import type { IntegrationTolerance } from '../pk/fluxTolerance'
 import { INTEGRATION_WITNESS, integrate, WORKING_TOLERANCE } from '../pk/integrate'
-import { isLinear } from '../pk/model'
+import { michaelisMentenCourse } from '../pk/michaelisMenten'
 import { rowTimes } from '../pk/profileTimes'
+import type { Trajectory } from '../pk/trajectory'
 import { type Witness, witness } from '../pk/witness'
 import type { StudyResult } from './result'
 
@@ -9,7 +11,7 @@ import type { StudyResult } from './result'
 export interface Confirmation extends Witness {
   readonly regimen: string
   /** Two unrelated methods, or one method at two tolerances. */
-  readonly by: 'second method' | 'finer tolerance'
+  readonly by: 'second method' | 'closed form' | 'finer tolerance'
 }
 
 /** What the course of a model that is not linear is compared with: a hundredth of the tolerance that it was computed to. */
@@ -20,19 +22,21 @@ const FINER: IntegrationTolerance = {
 
 /**
  * Every regimen computed again and compared at the times of its table: an exact course by the implicit integrator, an
- * integrated one by the same method at a hundredth of its tolerance.
+ * integrated one in closed form where it has one, by the same method at a hundredth of its tolerance elsewhere.
  */
 export function confirm(result: StudyResult): readonly Confirmation[] {
   return result.regimens.map(({ name, course }) => {
-    const exact = course.segments.every(({ model }) => isLinear(model))
-    const again = integrate(course.segments, course.initial, exact ? INTEGRATION_WITNESS : FINER)
     const times = [...rowTimes(course, result.study.sampling)].map(({ time }) => time)
-    return {
-      regimen: name,
-      by: exact ? 'second method' : 'finer tolerance',
-      ...witness(course.trajectory, again, times)
-    }
+    const { by, again } = computedAgain(course)
+    return { regimen: name, by, ...witness(course.trajectory, again, times) }
   })
+}
+
+function computedAgain({ segments, initial, method }: Course): Pick<Confirmation, 'by'> & { again: Trajectory } {
+  if (method === 'exact') return { by: 'second method', again: integrate(segments, initial, INTEGRATION_WITNESS) }
+  const closed = michaelisMentenCourse(segments, initial)
+  if (closed !== undefined) return { by: 'closed form', again: closed }
+  return { by: 'finer tolerance', again: integrate(segments, initial, FINER) }
 }
 
 /** The worst of several confirmations; undefined for none. */
