@@ -1,0 +1,52 @@
+import type { Quantity } from '../../units/quantity'
+import type { Kind } from '../../units/unitTable'
+import type { Step } from '../path'
+import type { Sign } from '../unitProblem'
+
+/** A place in a study file whose value can be typed anew, what may stand there and what stands there now. */
+export type Place = {
+  /** From the top of the file; the value there is the one given here. */
+  readonly path: readonly Step[]
+  /** What the value is, in words: `weight`. */
+  readonly label: string
+} & PlaceValue
+
+export type PlaceValue =
+  | {
+      readonly kind: 'quantity'
+      readonly quantity: Quantity
+      /** Absent: a unit of the model's own, which stays. */
+      readonly of?: Kind
+      readonly sign: Sign
+    }
+  /** A number from 0 to 1 that is typed and read in per cent. */
+  | { readonly kind: 'share'; readonly share: number }
+  /** A plain number over 0. */
+  | { readonly kind: 'number'; readonly number: number }
+  /** A whole number from 1; where it may be absent, nothing typed takes it away. */
+  | { readonly kind: 'whole'; readonly whole?: number; readonly optional: boolean }
+  | { readonly kind: 'choice'; readonly choice?: string; readonly choices: readonly Choice[] }
+  | { readonly kind: 'text'; readonly text?: string; readonly longest: number; readonly optional: boolean }
+
+export interface Choice {
+  readonly value: string
+  readonly text: string
+}
+
+/** The value at a place as it stands in the file; undefined where nothing stands. */
+export function valueIn(place: Place): unknown {
+  switch (place.kind) {
+    case 'quantity':
+      return place.quantity
+    case 'share':
+      return place.share
+    case 'number':
+      return place.number
+    case 'whole':
+      return place.whole
+    case 'choice':
+      return place.choice
+    case 'text':
+      return place.text
+  }
+}
