@@ -8,7 +8,8 @@ import type { Sign } from '../../study/unitProblem'
 import { convert, type Quantity } from '../../units/quantity'
 import { type Kind, unitOf, unitsOf } from '../../units/unitTable'
 import { percent, typed, withUnit } from './number'
-import { type Marked, value } from './prose'
+import { type EditQuestion, type Marked, value } from './prose'
+import { polished, sentence } from './showing'
 
 /** What a quantity's mark says of it beside its place. */
 export interface QuantityMark {
@@ -107,7 +108,7 @@ export class Marks {
   #marked(path: readonly Step[], text: string, label: string, found: PlaceValue): Marked {
     const at = formatPath(path)
     const asked = this.#questions.find((question) => question.path === at)
-    const question = asked && { text: asked.text, ...(asked.offer !== undefined && { offer: asked.offer }) }
+    const question = asked && questionOf(asked)
     const place: Place = { path, label, ...found }
     return { kind: 'value', text, edit: { place, at, ...(question !== undefined && { question }) } }
   }
@@ -132,6 +133,13 @@ export class Marks {
 export function quantityText({ value: number, unit }: Quantity, of?: Kind): string {
   if (of !== 'age' && of !== 'ageInWeeks') return withUnit(typed(number), unit)
   return `${typed(number)}\u00a0${unitInWords(unit, number)}`
+}
+
+function questionOf({ text, offer }: Question): EditQuestion {
+  const shown = sentence(polished(text))
+  return offer === undefined
+    ? { text: shown }
+    : { text: shown, offer: { quantity: offer, text: withUnit(typed(offer.value), offer.unit) } }
 }
 
 function isQuantity(found: unknown): found is Quantity {

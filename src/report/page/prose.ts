@@ -20,7 +20,12 @@ export interface EditMark {
   /** The value in the canonical unit, where it was typed in another. */
   readonly echo?: string
   /** What is asked back because the value is implausible, with the same number in a neighbouring unit. */
-  readonly question?: { readonly text: string; readonly offer?: Quantity }
+  readonly question?: EditQuestion
+}
+
+export interface EditQuestion {
+  readonly text: string
+  readonly offer?: { readonly quantity: Quantity; readonly text: string }
 }
 
 /** A number with its unit. */

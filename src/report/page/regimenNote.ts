@@ -71,7 +71,7 @@ function scheduledDoses(regimen: RegimenResult, showing: Showing): RegimenNote['
       line,
       number,
       missed,
-      text: `${showing.typedTime(at)}: ${showing.typedAmount(productAmount)}`
+      text: missed ? showing.typedTime(at) : `${showing.typedTime(at)}: ${showing.typedAmount(productAmount)}`
     }))
 }
 

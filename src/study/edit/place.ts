@@ -50,3 +50,29 @@ export function valueIn(place: Place): unknown {
       return place.text
   }
 }
+
+/** The place with the value that stands there in another state of the file; as it was where that does not fit. */
+export function placeIn(place: Place, value: unknown): Place {
+  switch (place.kind) {
+    case 'quantity':
+      return isQuantity(value) ? { ...place, quantity: value } : place
+    case 'share':
+      return typeof value === 'number' ? { ...place, share: value } : place
+    case 'number':
+      return typeof value === 'number' ? { ...place, number: value } : place
+    case 'whole': {
+      const { whole: _, ...bare } = place
+      return typeof value === 'number' ? { ...place, whole: value } : value === undefined ? bare : place
+    }
+    case 'choice':
+      return typeof value === 'string' ? { ...place, choice: value } : place
+    case 'text': {
+      const { text: _, ...bare } = place
+      return typeof value === 'string' ? { ...place, text: value } : value === undefined ? bare : place
+    }
+  }
+}
+
+function isQuantity(value: unknown): value is Quantity {
+  return typeof value === 'object' && value !== null && 'value' in value && 'unit' in value
+}

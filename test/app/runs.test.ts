@@ -1,0 +1,50 @@
+import { expect, test } from 'vitest'
+import { Runs } from '../../src/app/runs'
+import type { Outcome, PageWorker } from '../../src/app/worker/protocol'
+
+/** A worker whose runs are answered by hand, each with an issue that names what was run. */
+function workerByHand() {
+  const begun: { text: string; answer: () => void; fail: () => void }[] = []
+  const open = async (content: Blob): Promise<Outcome> => {
+    const text = await content.text()
+    return new Promise((answer, fail) => {
+      begun.push({
+        text,
+        answer: () => answer({ ok: false, issues: [{ path: '', message: text }] }),
+        fail: () => fail(new Error('out of memory'))
+      })
+    })
+  }
+  return { worker: { open } as PageWorker, begun }
+}
+
+const said = (outcome: Outcome | undefined) => (outcome?.ok === false ? outcome.issues[0]?.message : undefined)
+const moment = () => new Promise((done) => setTimeout(done, 5))
+
+test('of the runs that wait only the last is begun, and those overtaken come to nothing', async () => {
+  const { worker, begun } = workerByHand()
+  const busy: boolean[] = []
+  const runs = new Runs(worker, (now) => busy.push(now))
+  const answers = ['a', 'b', 'c'].map((text) => runs.run(new Blob([text])))
+  await moment()
+  expect(begun.map(({ text }) => text)).toEqual(['a'])
+  begun[0]?.answer()
+  await moment()
+  expect(begun.map(({ text }) => text)).toEqual(['a', 'c'])
+  begun[1]?.answer()
+  expect((await Promise.all(answers)).map(said)).toEqual([undefined, undefined, 'c'])
+  expect(busy).toEqual([true, false])
+})
+
+test('a run that fails says so, and the next one is begun all the same', async () => {
+  const { worker, begun } = workerByHand()
+  const runs = new Runs(worker, () => undefined)
+  const first = runs.run(new Blob(['a']))
+  await moment()
+  begun[0]?.fail()
+  expect(said(await first)).toContain('out of memory')
+  const second = runs.run(new Blob(['b']))
+  await moment()
+  begun[1]?.answer()
+  expect(said(await second)).toBe('b')
+})
