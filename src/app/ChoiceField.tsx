@@ -1,5 +1,5 @@
-import { For, onCleanup, onMount } from 'solid-js'
-import { type Place, valueIn } from '../study/edit/place'
+import { For, onCleanup, onMount, Show } from 'solid-js'
+import { type Choice, type Place, valueIn } from '../study/edit/place'
 
 /**
  * One of a few words, chosen from a list. A click on a word, Enter or going on takes it; arrow keys only move on the list;
@@ -7,8 +7,8 @@ import { type Place, valueIn } from '../study/edit/place'
  */
 export function ChoiceField(props: {
   place: Place
-  onChoose: (value: string, focus: boolean) => void
-  onLeave: () => void
+  onChoose: (choice: Choice, focus: boolean) => void
+  onLeave: (focus: boolean) => void
 }) {
   let list!: HTMLSelectElement
   let byKey = false
@@ -19,12 +19,19 @@ export function ChoiceField(props: {
   })
   onMount(() => list.focus())
   const choices = () => (props.place.kind === 'choice' ? props.place.choices : [])
+  /** The first of the words for what stands there. */
+  const now = () => choices().findIndex(({ value }) => value === valueIn(props.place))
+  const choose = (focus: boolean) => {
+    const choice = choices()[list.selectedIndex - (now() < 0 ? 1 : 0)]
+    if (choice === undefined) props.onLeave(focus)
+    else props.onChoose(choice, focus)
+  }
   const press = (event: KeyboardEvent) => {
     byKey = true
-    if (event.key === 'Enter') props.onChoose(list.value, true)
+    if (event.key === 'Enter') choose(true)
     else if (event.key === 'Escape') {
       left = true
-      props.onLeave()
+      props.onLeave(true)
     } else return
     event.preventDefault()
   }
@@ -37,20 +44,19 @@ export function ChoiceField(props: {
         byKey = false
       }}
       onChange={() => {
-        if (!byKey) props.onChoose(list.value, true)
+        if (!byKey) choose(true)
       }}
       onKeyDown={press}
       onBlur={() => {
-        if (!left) props.onChoose(list.value, false)
+        if (!left) choose(false)
       }}
     >
-      <For each={choices()}>
-        {({ value, text }) => (
-          <option value={value} selected={value === valueIn(props.place)}>
-            {text}
-          </option>
-        )}
-      </For>
+      <Show when={now() < 0}>
+        <option selected disabled>
+          choose
+        </option>
+      </Show>
+      <For each={choices()}>{({ text }, k) => <option selected={k() === now()}>{text}</option>}</For>
     </select>
   )
 }

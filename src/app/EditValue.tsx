@@ -1,10 +1,11 @@
 import { createSignal, createUniqueId, For, Match, Show, Switch } from 'solid-js'
+import { unwrap } from 'solid-js/store'
 import type { Issue } from '../pk/issue'
 import type { EditMark } from '../report/page/prose'
-import { type Place, placeIn, valueIn } from '../study/edit/place'
+import { type Choice, type Place, placeIn, valueIn } from '../study/edit/place'
 import { type Offer, readTyped, typedText } from '../study/edit/readTyped'
 import { renameRegimen } from '../study/edit/regimens'
-import { setValue, valueAt } from '../study/edit/setValue'
+import { setChoice, setValue, valueAt } from '../study/edit/setValue'
 import type { StudyFile } from '../study/file/studySchema'
 import { ChoiceField } from './ChoiceField'
 import { useDesk } from './deskContext'
@@ -49,10 +50,10 @@ export function EditValue(props: { text: string; edit: EditMark }) {
     setField(undefined)
     if (focus) queueMicrotask(() => button?.focus())
   }
-  const put = async (value: unknown, typed: string, focus: boolean) => {
+  const put = async (value: unknown, typed: string, focus: boolean, change = changeAt(props.edit.place, value)) => {
     const { at } = props.edit
-    if (same(value, valueIn(place())) && issues().length === 0) return close(focus)
-    const change = changeAt(props.edit.place, value)
+    const before = desk.present()
+    if (before !== undefined && same(change(before.file), before.file) && issues().length === 0) return close(focus)
     const found = await desk.edit(change, at)
     if (found === undefined || found.length === 0 || props.edit.place.kind === 'choice') return close(focus)
     setField({ at, text: typed, refused: typed, message: messageFor(found, at) })
@@ -63,10 +64,16 @@ export function EditValue(props: { text: string; edit: EditMark }) {
     const { message, offer } = answer
     setField({ at: props.edit.at, text: typed, refused: typed, message, ...(offer !== undefined && { offer }) })
   }
-  const leave = () => {
+  const choose = (choice: Choice, focus: boolean) => {
+    const path = [...props.edit.place.path]
+    const { value, text, beside } = choice
+    const chosen = { value, text, ...(beside !== undefined && { beside: plainOf(beside) }) }
+    void put(value, text, focus, (file) => setChoice(file, path, chosen))
+  }
+  const leave = (focus: boolean) => {
     // What the worker refused is taken back with the field that it came from.
     if (desk.refusal()?.edited === true && desk.lastEdited() === props.edit.at) desk.undo()
-    close(true)
+    close(focus)
   }
   const describedBy = () => {
     const ids = [
@@ -94,7 +101,7 @@ export function EditValue(props: { text: string; edit: EditMark }) {
         }
       >
         <Match when={open() !== undefined && props.edit.place.kind === 'choice'}>
-          <ChoiceField place={place()} onChoose={commit} onLeave={leave} />
+          <ChoiceField place={place()} onChoose={choose} onLeave={leave} />
         </Match>
         <Match when={open()}>
           {(opened) => (
@@ -107,7 +114,7 @@ export function EditValue(props: { text: string; edit: EditMark }) {
               offer={opened().offer}
               refused={opened().refused}
               onCommit={commit}
-              onLeave={leave}
+              onLeave={() => leave(true)}
             />
           )}
         </Match>
@@ -162,8 +169,12 @@ function changeAt(place: Place, value: unknown): (file: StudyFile) => StudyFile 
 /** The issue of the value itself, else the first. */
 function messageFor(issues: readonly Issue[], at: string): string {
   const issue = issues.find(({ path }) => path === at) ?? issues[0]
-  if (issue === undefined) return ''
-  return issue.path === at || issue.path === '' ? issue.message : `${issue.path}: ${issue.message}`
+  return issue?.message ?? ''
+}
+
+/** The data behind what the page holds, as it may be put into a file. */
+function plainOf<T>(held: T): T {
+  return structuredClone(unwrap(held))
 }
 
 function same(a: unknown, b: unknown): boolean {

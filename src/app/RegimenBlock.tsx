@@ -2,6 +2,7 @@ import { createSignal, For, Index, Show } from 'solid-js'
 import type { RegimenNote, ScheduledDose } from '../report/page/page'
 import { addDose, markDose, removeDose } from '../study/edit/doses'
 import { copyRegimen, moveRegimen, removeRegimen } from '../study/edit/regimens'
+import type { StudyFile } from '../study/file/studySchema'
 import { RegimenTag } from './RegimenTag'
 import type { StudyDesk } from './studyDesk'
 import { Words } from './Words'
@@ -21,9 +22,23 @@ interface RegimenProps {
 export function RegimenBlock(props: RegimenProps) {
   const letter = () => props.regimen.label.letter
   const kept = () => (props.count === 1 ? 'a study has at least one regimen' : props.regimen.keptBecause)
-  const move = (by: number) => void props.desk.restructure((file) => moveRegimen(file, props.index, props.index + by))
+  let block!: HTMLDivElement
+  /** Change the list of regimens; the focus follows the regimen to its new position. */
+  const act = async (change: (file: StudyFile) => StudyFile, to: number) => {
+    const list = block.parentElement
+    const used = document.activeElement?.getAttribute('data-tool')
+    await props.desk.restructure(change)
+    const tools = list?.querySelectorAll('.regimen')[to]?.querySelectorAll<HTMLButtonElement>('.tools button')
+    const able = [...(tools ?? [])].filter((tool) => !tool.disabled)
+    const follow = able.find((tool) => tool.getAttribute('data-tool') === used) ?? able[0]
+    follow?.focus()
+  }
+  const move = (by: number) => {
+    const from = props.index
+    void act((file) => moveRegimen(file, from, from + by), from + by)
+  }
   return (
-    <div class={`regimen s${props.regimen.label.style}`}>
+    <div ref={block} class={`regimen s${props.regimen.label.style}`}>
       <div class="row">
         <h3>
           <RegimenTag label={props.regimen.label} /> <Words prose={props.regimen.name} />
@@ -33,7 +48,8 @@ export function RegimenBlock(props: RegimenProps) {
             type="button"
             aria-label={`Copy regimen ${letter()}`}
             disabled={props.count >= MOST_REGIMENS}
-            onClick={() => void props.desk.restructure((file) => copyRegimen(file, props.index))}
+            data-tool="copy"
+            onClick={() => void act((file) => copyRegimen(file, props.index), props.index + 1)}
           >
             Copy
           </button>
@@ -41,6 +57,7 @@ export function RegimenBlock(props: RegimenProps) {
             type="button"
             aria-label={`Move regimen ${letter()} up`}
             disabled={props.index === 0}
+            data-tool="up"
             onClick={() => move(-1)}
           >
             Up
@@ -49,6 +66,7 @@ export function RegimenBlock(props: RegimenProps) {
             type="button"
             aria-label={`Move regimen ${letter()} down`}
             disabled={props.index === props.count - 1}
+            data-tool="down"
             onClick={() => move(1)}
           >
             Down
@@ -58,7 +76,8 @@ export function RegimenBlock(props: RegimenProps) {
             aria-label={`Remove regimen ${letter()}`}
             title={kept()}
             disabled={kept() !== ''}
-            onClick={() => void props.desk.restructure((file) => removeRegimen(file, props.index))}
+            data-tool="remove"
+            onClick={() => void act((file) => removeRegimen(file, props.index), Math.max(0, props.index - 1))}
           >
             Remove
           </button>

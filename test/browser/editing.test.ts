@@ -3,7 +3,7 @@ import type { Page } from 'playwright-core'
 import { describe, expect, test } from 'vitest'
 import { findings } from './axe'
 import { DEMONSTRATION, studyBytes } from './core'
-import { browserSession, studyShown } from './session'
+import { browserSession, openFile, studyShown } from './session'
 
 const session = browserSession()
 
@@ -221,6 +221,42 @@ describe('by keyboard alone', () => {
     await page.keyboard.press('Tab')
     await settled(page)
     expect((await savedStudy(page)).patient).toMatchObject({ sex: 'male', age: { value: 60, unit: 'a' } })
+  })
+
+  test('a choice that was never made is not made by going on', async () => {
+    const { page } = await session.open()
+    const study = JSON.parse(studyBytes(DEMONSTRATION).toString())
+    study.title = 'Without a sex'
+    study.patient = { weight: study.patient.weight, creatinineClearance: { value: 40, unit: 'mL/min' } }
+    await openFile(page, 'without.json', JSON.stringify(study))
+    await value(page, /^sex: person/).press('Enter')
+    await page.keyboard.press('Tab')
+    await settled(page)
+    expect((await savedStudy(page)).patient).not.toHaveProperty('sex')
+    await value(page, /^sex: person/).press('Enter')
+    await page.getByRole('combobox', { name: 'sex' }).selectOption({ label: 'man' })
+    await settled(page)
+    expect((await savedStudy(page)).patient.sex).toBe('male')
+  })
+
+  test('another route is chosen with how the dose is given on it, and the focus follows a regimen that is moved', async () => {
+    const { page } = await session.open()
+    const choose = async (text: string) => {
+      await value(page, /^route:/)
+        .nth(1)
+        .press('Enter')
+      await page.getByRole('combobox', { name: 'route' }).selectOption({ label: text })
+      await settled(page)
+      return (await savedStudy(page)).regimens[0].doses[1]
+    }
+    const oral = await choose('orally')
+    expect(oral.route).toBe('oral')
+    expect(oral).not.toHaveProperty('over')
+    expect(await choose('intravenously as a bolus')).toMatchObject({ route: 'intravenous', bolus: true })
+    expect(await choose('intravenously over 1\u00a0h')).toMatchObject({ over: { value: 1, unit: 'h' } })
+    const up = page.getByRole('button', { name: 'Move regimen C up' })
+    await up.press('Enter')
+    await page.getByRole('button', { name: 'Move regimen B up' }).and(page.locator(':focus')).waitFor()
   })
 
   test('what is refused is not lost by going on, and has its message', async () => {

@@ -1,6 +1,6 @@
 import { unitInWords } from '../../patient/covariateWords'
 import type { Question } from '../../patient/plausibility'
-import type { Place, PlaceValue } from '../../study/edit/place'
+import type { Choice, Place, PlaceValue } from '../../study/edit/place'
 import { valueAt } from '../../study/edit/setValue'
 import type { StudyFile } from '../../study/file/studySchema'
 import { formatPath, type Step } from '../../study/path'
@@ -77,17 +77,12 @@ export class Marks {
     })
   }
 
-  /** One of a few words; `choices` are pairs of what stands in the file and what is shown. */
-  choice(
-    path: readonly Step[],
-    read: string,
-    label: string,
-    choices: readonly (readonly [value: string, text: string])[]
-  ): Marked {
+  /** One of a few words. */
+  choice(path: readonly Step[], read: string, label: string, choices: readonly Choice[]): Marked {
     return this.#present(path, read, label, (at) => ({
       kind: 'choice',
       ...(typeof at === 'string' && { choice: at }),
-      choices: choices.map(([choice, text]) => ({ value: choice, text }))
+      choices
     }))
   }
 
@@ -140,6 +135,11 @@ function questionOf({ text, offer }: Question): EditQuestion {
   return offer === undefined
     ? { text: shown }
     : { text: shown, offer: { quantity: offer, text: withUnit(typed(offer.value), offer.unit) } }
+}
+
+/** Choices from pairs of what stands in the file and what is shown. */
+export function choicesOf(pairs: readonly (readonly [value: string, text: string])[]): readonly Choice[] {
+  return pairs.map(([value, text]) => ({ value, text }))
 }
 
 function isQuantity(found: unknown): found is Quantity {

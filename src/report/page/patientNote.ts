@@ -5,7 +5,7 @@ import { COVARIATE_KINDS, kindOfOwn } from '../../study/knownCovariates'
 import type { Step } from '../../study/path'
 import type { Study } from '../../study/study'
 import type { Kind } from '../../units/unitTable'
-import type { Marks } from './marks'
+import { choicesOf, type Marks } from './marks'
 import { type Marked, type Prose, value } from './prose'
 import { sessionsSentence } from './sessionNote'
 import { polished, type Showing } from './showing'
@@ -16,11 +16,11 @@ const DIGITS = 6
 const SPOKEN: readonly CovariateName[] = ['weight', 'height']
 const AGES: readonly CovariateName[] = ['age', 'postnatalAge', 'gestationalAge', 'postmenstrualAge']
 const MAY_BE_NOTHING = ['age', 'postnatalAge', 'creatinineClearance', 'estimatedGfr', 'absoluteGfr']
-const REPLACEMENTS = [
+const REPLACEMENTS = choicesOf([
   ['none', 'no'],
   ['intermittent', 'intermittent'],
   ['continuous', 'continuous']
-] as const
+])
 
 /** The patient in a sentence, then a sentence for each change. */
 export function patientNote(study: Study, showing: Showing, marks: Marks): readonly Prose[] {
@@ -53,11 +53,7 @@ function stepsOf(path: string): readonly Step[] {
   return index === undefined ? PATIENT : ['patient', 'changes', Number(index)]
 }
 
-/** `from 72 h (day 4)`. */
-export function since(hours: number, showing: Showing): string {
-  return `${showing.typedTime(hours)}${dayOf(hours)}`
-}
-
+/** ` (day 4)`. */
 function dayOf(hours: number): string {
   return ` (day\u00a0${Math.floor(hours / 24) + 1})`
 }
@@ -165,7 +161,7 @@ function categoryMark(name: string, person: Person, holder: readonly Step[], { s
     [...holder, name],
     person.categories[name] ?? '',
     name,
-    categories.map((category) => [category, category] as const)
+    categories.map((category) => ({ value: category, text: category }))
   )
 }
 
@@ -184,7 +180,7 @@ function sexMark(person: Person, marks: Marks): Marked {
   const [female, male, either] = child ? ['girl', 'boy', 'child'] : ['woman', 'man', 'person']
   const read = person.sex === undefined ? either : person.sex === 'female' ? female : male
   return marks.choice(['patient', 'sex'], read, 'sex', [
-    ['female', female],
-    ['male', male]
+    { value: 'female', text: female },
+    { value: 'male', text: male }
   ])
 }

@@ -1,9 +1,10 @@
 import type { DoseLine, Exception, Reckoned } from '../../pk/prescription'
+import type { Choice } from '../../study/edit/place'
 import { isMeasured } from '../../study/edit/regimens'
 import type { Step } from '../../study/path'
 import type { RegimenResult, StudyResult } from '../../study/result'
 import { multipleOf } from '../../units/spacing'
-import type { Marks } from './marks'
+import { choicesOf, type Marks } from './marks'
 import { typed, withUnit } from './number'
 import type { RegimenLabel, RegimenNote } from './page'
 import { type Marked, value } from './prose'
@@ -21,8 +22,8 @@ export function regimenNote(
   const prose: (string | Marked)[] = []
   if (prescription.start === 'steady-state') {
     const start = marks.choice([...at, 'start'], 'steady state', 'start', [
-      ['empty', 'start empty'],
-      ['steady-state', 'steady state']
+      { value: 'empty', text: 'start empty' },
+      { value: 'steady-state', text: 'steady state' }
     ])
     prose.push('In the ', start, ' of its repeating doses at time 0: ')
   }
@@ -79,12 +80,11 @@ function lineInWords(context: LineContext): (string | Marked)[] {
   const { line, at, before, result, showing, marks } = context
   const prose: (string | Marked)[] = [...reckonedMark(context), ...asideInWords(context)]
   if (line.product !== undefined) {
-    const products = result.study.drugModel.drug.products.map(({ name }) => [name, name] as const)
+    const products = result.study.drugModel.drug.products.map(({ name }) => ({ value: name, text: name }))
     prose.push(' of ', marks.choice([...at, 'product'], line.product, 'product', products))
   }
   if (before?.route !== line.route || marks.file !== undefined) {
-    const routes = result.study.drugModel.routes.map(({ name }) => [name, routeInWords(name)] as const)
-    prose.push(' ', marks.choice([...at, 'route'], routeInWords(line.route), 'route', routes))
+    prose.push(' ', marks.choice([...at, 'route'], routeInWords(line.route), 'route', routeChoices(line, result)))
   }
   if (line.over !== undefined) {
     prose.push(' over ', timeMark('over', line.over, 'length of the infusion', context))
@@ -110,6 +110,26 @@ function lineInWords(context: LineContext): (string | Marked)[] {
     prose.push(')')
   }
   return prose
+}
+
+/**
+ * The routes, each with how a dose is given on it, in so many words: the first of the present route is how it is now. Off
+ * the routes of infusions a dose has no length; a rate runs for its time on any route.
+ */
+function routeChoices(line: DoseLine, { study }: StudyResult): readonly Choice[] {
+  return study.drugModel.routes.flatMap(({ name, input }): Choice[] => {
+    const text = routeInWords(name)
+    const asNow: Choice = { value: name, text }
+    if (line.rate !== undefined) return [asNow]
+    if (input !== 'infusion') {
+      return name === line.route ? [asNow] : [{ ...asNow, beside: { over: undefined, bolus: undefined } }]
+    }
+    const bolus = { value: name, text: `${text} as a bolus`, beside: { over: undefined, bolus: true } }
+    if (line.over !== undefined) return [asNow, bolus]
+    const beside = { over: { value: 1, unit: 'h' }, bolus: undefined }
+    const over = { value: name, text: `${text} over 1\u00a0h`, beside }
+    return name === line.route ? [asNow, over] : [over, bolus]
+  })
 }
 
 function timeMark(key: string, hours: number, label: string, { at, showing, marks }: LineContext): Marked {
@@ -164,7 +184,7 @@ const WEIGHTS = {
   actualIfBelowIdeal: 'actual, if below ideal,',
   adjustedAbove120PercentIdeal: 'adjusted, above 120\u00a0% of ideal,'
 } as const
-const WEIGHT_CHOICES = Object.entries(WEIGHTS)
+const WEIGHT_CHOICES = choicesOf(Object.entries(WEIGHTS))
 
 function departureInWords(
   exception: Exception,

@@ -63,8 +63,8 @@ function rest(target: Target, at: readonly Step[], showing: Showing, marks: Mark
   if (target.kind === 'level') {
     const after = { label: 'time after the dose', of: 'time', sign: 'not negative' } as const
     const from = marks.choice([...at, 'from'], target.from === 'dose end' ? 'end' : 'start', 'counted from', [
-      ['dose start', 'start'],
-      ['dose end', 'end']
+      { value: 'dose start', text: 'start' },
+      { value: 'dose end', text: 'end' }
     ])
     const time = marks.quantity([...at, 'after'], showing.typedTime(target.after ?? 0), after)
     return [' ', time, ' after the ', from, ' of a dose']

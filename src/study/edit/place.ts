@@ -31,6 +31,8 @@ export type PlaceValue =
 export interface Choice {
   readonly value: string
   readonly text: string
+  /** What must stand beside the value for it to hold, by key; undefined for what must not. */
+  readonly beside?: Readonly<Record<string, unknown>>
 }
 
 /** The value at a place as it stands in the file; undefined where nothing stands. */

@@ -1,5 +1,6 @@
 import type { StudyFile } from '../file/studySchema'
 import { formatPath, type Step } from '../path'
+import type { Choice } from './place'
 
 /** The value at a path of a file; undefined where the path leads nowhere. */
 export function valueAt(file: StudyFile, path: readonly Step[]): unknown {
@@ -13,6 +14,14 @@ export function valueAt(file: StudyFile, path: readonly Step[]): unknown {
 export function setValue(file: StudyFile, path: readonly Step[], value: unknown): StudyFile {
   if (path.length === 0) throw new RangeError('a value is set inside a file, not in place of it')
   return replaced(file, path, value, path) as StudyFile
+}
+
+/** The file with one of a few words chosen at a path, and what must stand beside it. */
+export function setChoice(file: StudyFile, path: readonly Step[], { value, beside }: Choice): StudyFile {
+  return Object.entries(beside ?? {}).reduce(
+    (edited, [key, member]) => setValue(edited, [...path.slice(0, -1), key], member),
+    setValue(file, path, value)
+  )
 }
 
 function replaced(holder: unknown, rest: readonly Step[], value: unknown, path: readonly Step[]): unknown {

@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest'
-import { setValue, valueAt } from '../../../src/study/edit/setValue'
+import { setChoice, setValue, valueAt } from '../../../src/study/edit/setValue'
 import type { StudyFile } from '../../../src/study/file/studySchema'
 import { q, study } from '../example'
 
@@ -35,4 +35,12 @@ test.each([[[]], [['regimens', 7, 'name']], [['regimens', -1]], [['title', 'x']]
 
 test('a path into what every object inherits leads to nothing', () => {
   expect(valueAt(file, ['patient', 'constructor'])).toBeUndefined()
+})
+
+test('a choice brings with it what must stand beside it, and takes away what must not', () => {
+  const path = ['regimens', 0, 'doses', 1, 'route']
+  const chosen = setChoice(file, path, { value: 'oral', text: 'orally', beside: { over: undefined, reason: 'x' } })
+  const dose = chosen.regimens[0]?.doses[1]
+  expect(dose).toMatchObject({ route: 'oral', reason: 'x' })
+  expect(dose).not.toHaveProperty('over')
 })
