@@ -2,6 +2,7 @@ import { createEffect, onMount, Show } from 'solid-js'
 import { CautionLine } from './CautionLine'
 import { ConcentrationTable } from './ConcentrationTable'
 import { CurveCard } from './CurveCard'
+import { DeskContext } from './deskContext'
 import { acceptDrops } from './drop'
 import { EstimatesCard } from './EstimatesCard'
 import { ExposureCard } from './ExposureCard'
@@ -11,28 +12,33 @@ import { Note } from './Note'
 import { PhasesCard } from './PhasesCard'
 import { SaturationCard } from './SaturationCard'
 import { SecondWitness } from './SecondWitness'
-import { firstStudy } from './shippedStudies'
 import type { StudyDesk } from './studyDesk'
+import { acceptUndoKeys } from './undoKeys'
+import { VisitLine } from './VisitLine'
+import { createVisit } from './visit'
 
 /** The one page: the note, the curve beside it, then exposure, phases and the table, over a caution that stays. */
 export function App(props: { desk: StudyDesk }) {
   const desk = props.desk
+  const visit = createVisit(desk)
   onMount(() => {
     acceptDrops(desk)
-    firstStudy().then(desk.open, (failure: Error) => desk.refuse('The first study', failure.message))
+    acceptUndoKeys(desk)
+    void visit.begin()
   })
   createEffect(() => {
     document.title = desk.page() === undefined ? 'Phasewise' : `${desk.page()?.title} · Phasewise`
   })
   return (
-    <>
+    <DeskContext.Provider value={desk}>
       <Header desk={desk} />
       <main aria-busy={desk.busy()}>
+        <VisitLine desk={desk} visit={visit} />
         <Show when={desk.refusal()}>{(refusal) => <IssueList refusal={refusal()} kept={desk.page()?.title} />}</Show>
         <Show when={desk.page()} fallback={<p class="waiting">{desk.refusal() ? '' : 'Computing …'}</p>}>
           {(page) => (
             <div class="desk" classList={{ old: desk.refusal() !== undefined }}>
-              <Note page={page()} />
+              <Note desk={desk} page={page()} />
               <CurveCard chart={page().chart} />
               <ExposureCard desk={desk} grids={page().exposure} />
               <EstimatesCard estimates={page().note.estimates} />
@@ -48,6 +54,6 @@ export function App(props: { desk: StudyDesk }) {
         </Show>
       </main>
       <CautionLine count={desk.page()?.cautions.length ?? 0} />
-    </>
+    </DeskContext.Provider>
   )
 }

@@ -1,7 +1,8 @@
-import { For } from 'solid-js'
+import { For, Show } from 'solid-js'
 import { saveFile } from './saveFile'
 import { SHIPPED_STUDIES, shippedStudy } from './shippedStudies'
-import type { StudyDesk } from './studyDesk'
+import { contentOf, type StudyDesk } from './studyDesk'
+import { Words } from './Words'
 
 /** The name of the study and what can be done with the file. */
 export function Header(props: { desk: StudyDesk }) {
@@ -18,17 +19,30 @@ export function Header(props: { desk: StudyDesk }) {
     shippedStudy(id).then(desk.open, (failure: Error) => desk.refuse(`${id}.json`, failure.message))
   }
   const save = () => {
-    const file = desk.file()
-    if (file !== undefined) saveFile(file.name, file.content)
+    const study = desk.present()
+    if (study !== undefined) saveFile(study.name, contentOf(study))
   }
   return (
     <header>
       <span class="brand">Phasewise</span>
-      <h1>{desk.page()?.title ?? ''}</h1>
+      <h1>
+        <Words prose={desk.page()?.heading ?? []} />
+      </h1>
       <span class="busy" role="status">
-        {desk.busy() ? 'Computing …' : ''}
+        {desk.slow() ? `${desk.doing()} …` : desk.busy() ? 'Computing …' : ''}
       </span>
+      <Show when={desk.slow()}>
+        <button type="button" onClick={() => void desk.stop()}>
+          Stop
+        </button>
+      </Show>
       <div class="actions">
+        <button type="button" disabled={!desk.canUndo()} title="Undo (Ctrl+Z)" onClick={desk.undo}>
+          Undo
+        </button>
+        <button type="button" disabled={!desk.canRedo()} title="Redo (Ctrl+Shift+Z)" onClick={desk.redo}>
+          Redo
+        </button>
         <button type="button" popovertarget="worked-studies">
           Worked studies
         </button>
@@ -51,7 +65,7 @@ export function Header(props: { desk: StudyDesk }) {
         >
           Open
         </button>
-        <button type="button" disabled={desk.file() === undefined} onClick={save}>
+        <button type="button" disabled={desk.present() === undefined} onClick={save}>
           Save
         </button>
         <button type="button" class="main" disabled={desk.page() === undefined} onClick={() => window.print()}>

@@ -7,7 +7,8 @@ export function IssueList(props: { refusal: Refusal; kept: string | undefined })
   return (
     <section class="issues" role="alert" aria-labelledby="issues-title">
       <h2 id="issues-title">
-        {props.refusal.name} was not used: {count() === 1 ? '1 problem' : `${count()} problems`}
+        {props.refusal.edited ? 'The study as it is now cannot be computed' : `${props.refusal.name} was not used`}:{' '}
+        {count() === 1 ? '1 problem' : `${count()} problems`}
       </h2>
       <ol>
         <For each={props.refusal.issues}>
@@ -24,8 +25,8 @@ export function IssueList(props: { refusal: Refusal; kept: string | undefined })
       <Show when={props.kept}>
         {(title) => (
           <p class="quiet">
-            What stands below, in grey, is not of this file but of the last study that could be computed:{' '}
-            <b>{title()}</b>
+            What stands below, in grey, is not of {props.refusal.edited ? 'the study as it is now' : 'this file'} but of
+            the last study that could be computed: <b>{title()}</b>
           </p>
         )}
       </Show>

@@ -1,10 +1,12 @@
 import { For, Show } from 'solid-js'
 import type { PageView } from '../report/page/page'
-import { RegimenTag } from './RegimenTag'
+import { addRegimen } from '../study/edit/regimens'
+import { MOST_REGIMENS, RegimenBlock } from './RegimenBlock'
+import type { StudyDesk } from './studyDesk'
 import { Words } from './Words'
 
 /** The consult note: patient, model, regimens and targets in words, then what was found. */
-export function Note(props: { page: PageView }) {
+export function Note(props: { desk: StudyDesk; page: PageView }) {
   const note = () => props.page.note
   return (
     <article class="note" aria-label="Note">
@@ -64,15 +66,18 @@ export function Note(props: { page: PageView }) {
       <section aria-labelledby="regimens">
         <h2 id="regimens">Regimens</h2>
         <For each={note().regimens}>
-          {(regimen) => (
-            <div class={`regimen s${regimen.label.style}`}>
-              <p>
-                <RegimenTag label={regimen.label} /> <Words prose={regimen.sentence} />
-              </p>
-              <For each={regimen.notes}>{(remark) => <p class="quiet">{remark}</p>}</For>
-            </div>
+          {(regimen, k) => (
+            <RegimenBlock desk={props.desk} regimen={regimen} index={k()} count={note().regimens.length} />
           )}
         </For>
+        <button
+          type="button"
+          class="take"
+          disabled={note().regimens.length >= MOST_REGIMENS}
+          onClick={() => void props.desk.restructure(addRegimen)}
+        >
+          Add a regimen
+        </button>
       </section>
       <section aria-labelledby="targets">
         <h2 id="targets">Targets</h2>
@@ -85,6 +90,9 @@ export function Note(props: { page: PageView }) {
             )}
           </For>
         </ul>
+        <p class="quiet">
+          <Words prose={note().course} />
+        </p>
       </section>
     </article>
   )

@@ -1,4 +1,4 @@
-import type { StudyFile } from './studyDesk'
+import type { GivenFile } from './studyDesk'
 
 /** The worked studies that come with the program, each a file of its own that is fetched when it is opened. */
 const FILES = import.meta.glob<string>('../../models/studies/*.json', { query: '?url', import: 'default', eager: true })
@@ -15,18 +15,22 @@ export const SHIPPED_STUDIES: readonly ShippedStudy[] = Object.keys(FILES)
   .map((path) => path.slice(path.lastIndexOf('/') + 1, -'.json'.length))
   .map((id) => ({ id, title: `${id.charAt(0).toUpperCase()}${id.slice(1).replaceAll('-', ' ')}` }))
 
-export async function shippedStudy(id: string): Promise<StudyFile> {
+export async function shippedStudy(id: string): Promise<GivenFile> {
   const address = FILES[`../../models/studies/${id}.json`]
   if (address === undefined) throw new RangeError(`no study named ${id} comes with the program`)
   return fetched(address, `${id}.json`)
 }
 
-/** The study that the page was opened with: the one that the command serves beside it, else the demonstration. */
-export async function firstStudy(): Promise<StudyFile> {
-  return location.search === '?opened' ? fetched('opened-study.json', 'opened-study.json') : shippedStudy(DEMONSTRATION)
+export function demonstration(): Promise<GivenFile> {
+  return shippedStudy(DEMONSTRATION)
 }
 
-async function fetched(address: string, name: string): Promise<StudyFile> {
+/** The study that the command serves beside the page, where it was opened with one. */
+export function openedStudy(): Promise<GivenFile> | undefined {
+  return location.search === '?opened' ? fetched('opened-study.json', 'opened-study.json') : undefined
+}
+
+async function fetched(address: string, name: string): Promise<GivenFile> {
   const answer = await fetch(address)
   if (!answer.ok) throw new Error(`the study could not be read (status ${answer.status})`)
   return { name, content: await answer.blob() }

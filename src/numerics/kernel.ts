@@ -6,8 +6,8 @@
 export interface Kernel {
   /** `count` rows A, one after another: out = A B. `out` must be neither. */
   readonly rows: (a: Float64Array, count: number, b: Float64Array, out: Float64Array) => void
-  /** `count` columns C, one after another: out = B C. `out` must be neither. */
-  readonly columns: (b: Float64Array, c: Float64Array, count: number, out: Float64Array) => void
+  /** `count` rows A and `columns` columns C, both one after another: out = A C, column by column. `out` must be neither. */
+  readonly columns: (a: Float64Array, count: number, c: Float64Array, columns: number, out: Float64Array) => void
   /** Steps of x <- B x: `states` holds x in its first n places and receives `count` successors behind it. */
   readonly march: (b: Float64Array, states: Float64Array, count: number) => void
   /** The first `count` rows of `a`, in place: every column divided by its sum. */

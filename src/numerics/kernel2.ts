@@ -16,16 +16,14 @@ function rows2(a: Float64Array, count: number, b: Float64Array, out: Float64Arra
   }
 }
 
-function columns2(b: Float64Array, c: Float64Array, count: number, out: Float64Array): void {
-  const b00 = b[0],
-    b01 = b[1]
-  const b10 = b[2],
-    b11 = b[3]
-  for (let p = 0; p < 2 * count; p += 2) {
-    const c0 = c[p],
-      c1 = c[p + 1]
-    out[p] = b00 * c0 + b01 * c1
-    out[p + 1] = b10 * c0 + b11 * c1
+function columns2(a: Float64Array, count: number, c: Float64Array, columns: number, out: Float64Array): void {
+  let q = 0
+  for (let column = 0; column < columns; column++) {
+    const x0 = c[2 * column]
+    const x1 = c[2 * column + 1]
+    for (let p = 0; p < 2 * count; p += 2) {
+      out[q++] = a[p] * x0 + a[p + 1] * x1
+    }
   }
 }
 

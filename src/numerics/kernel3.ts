@@ -23,23 +23,15 @@ function rows3(a: Float64Array, count: number, b: Float64Array, out: Float64Arra
   }
 }
 
-function columns3(b: Float64Array, c: Float64Array, count: number, out: Float64Array): void {
-  const b00 = b[0],
-    b01 = b[1],
-    b02 = b[2]
-  const b10 = b[3],
-    b11 = b[4],
-    b12 = b[5]
-  const b20 = b[6],
-    b21 = b[7],
-    b22 = b[8]
-  for (let p = 0; p < 3 * count; p += 3) {
-    const c0 = c[p],
-      c1 = c[p + 1],
-      c2 = c[p + 2]
-    out[p] = b00 * c0 + b01 * c1 + b02 * c2
-    out[p + 1] = b10 * c0 + b11 * c1 + b12 * c2
-    out[p + 2] = b20 * c0 + b21 * c1 + b22 * c2
+function columns3(a: Float64Array, count: number, c: Float64Array, columns: number, out: Float64Array): void {
+  let q = 0
+  for (let column = 0; column < columns; column++) {
+    const x0 = c[3 * column]
+    const x1 = c[3 * column + 1]
+    const x2 = c[3 * column + 2]
+    for (let p = 0; p < 3 * count; p += 3) {
+      out[q++] = a[p] * x0 + a[p + 1] * x1 + a[p + 2] * x2
+    }
   }
 }
 

@@ -32,32 +32,16 @@ function rows4(a: Float64Array, count: number, b: Float64Array, out: Float64Arra
   }
 }
 
-function columns4(b: Float64Array, c: Float64Array, count: number, out: Float64Array): void {
-  const b00 = b[0],
-    b01 = b[1],
-    b02 = b[2],
-    b03 = b[3]
-  const b10 = b[4],
-    b11 = b[5],
-    b12 = b[6],
-    b13 = b[7]
-  const b20 = b[8],
-    b21 = b[9],
-    b22 = b[10],
-    b23 = b[11]
-  const b30 = b[12],
-    b31 = b[13],
-    b32 = b[14],
-    b33 = b[15]
-  for (let p = 0; p < 4 * count; p += 4) {
-    const c0 = c[p],
-      c1 = c[p + 1],
-      c2 = c[p + 2],
-      c3 = c[p + 3]
-    out[p] = b00 * c0 + b01 * c1 + b02 * c2 + b03 * c3
-    out[p + 1] = b10 * c0 + b11 * c1 + b12 * c2 + b13 * c3
-    out[p + 2] = b20 * c0 + b21 * c1 + b22 * c2 + b23 * c3
-    out[p + 3] = b30 * c0 + b31 * c1 + b32 * c2 + b33 * c3
+function columns4(a: Float64Array, count: number, c: Float64Array, columns: number, out: Float64Array): void {
+  let q = 0
+  for (let column = 0; column < columns; column++) {
+    const x0 = c[4 * column]
+    const x1 = c[4 * column + 1]
+    const x2 = c[4 * column + 2]
+    const x3 = c[4 * column + 3]
+    for (let p = 0; p < 4 * count; p += 4) {
+      out[q++] = a[p] * x0 + a[p + 1] * x1 + a[p + 2] * x2 + a[p + 3] * x3
+    }
   }
 }
 

@@ -43,43 +43,17 @@ function rows5(a: Float64Array, count: number, b: Float64Array, out: Float64Arra
   }
 }
 
-function columns5(b: Float64Array, c: Float64Array, count: number, out: Float64Array): void {
-  const b00 = b[0],
-    b01 = b[1],
-    b02 = b[2],
-    b03 = b[3],
-    b04 = b[4]
-  const b10 = b[5],
-    b11 = b[6],
-    b12 = b[7],
-    b13 = b[8],
-    b14 = b[9]
-  const b20 = b[10],
-    b21 = b[11],
-    b22 = b[12],
-    b23 = b[13],
-    b24 = b[14]
-  const b30 = b[15],
-    b31 = b[16],
-    b32 = b[17],
-    b33 = b[18],
-    b34 = b[19]
-  const b40 = b[20],
-    b41 = b[21],
-    b42 = b[22],
-    b43 = b[23],
-    b44 = b[24]
-  for (let p = 0; p < 5 * count; p += 5) {
-    const c0 = c[p],
-      c1 = c[p + 1],
-      c2 = c[p + 2],
-      c3 = c[p + 3],
-      c4 = c[p + 4]
-    out[p] = b00 * c0 + b01 * c1 + b02 * c2 + b03 * c3 + b04 * c4
-    out[p + 1] = b10 * c0 + b11 * c1 + b12 * c2 + b13 * c3 + b14 * c4
-    out[p + 2] = b20 * c0 + b21 * c1 + b22 * c2 + b23 * c3 + b24 * c4
-    out[p + 3] = b30 * c0 + b31 * c1 + b32 * c2 + b33 * c3 + b34 * c4
-    out[p + 4] = b40 * c0 + b41 * c1 + b42 * c2 + b43 * c3 + b44 * c4
+function columns5(a: Float64Array, count: number, c: Float64Array, columns: number, out: Float64Array): void {
+  let q = 0
+  for (let column = 0; column < columns; column++) {
+    const x0 = c[5 * column]
+    const x1 = c[5 * column + 1]
+    const x2 = c[5 * column + 2]
+    const x3 = c[5 * column + 3]
+    const x4 = c[5 * column + 4]
+    for (let p = 0; p < 5 * count; p += 5) {
+      out[q++] = a[p] * x0 + a[p + 1] * x1 + a[p + 2] * x2 + a[p + 3] * x3 + a[p + 4] * x4
+    }
   }
 }
 

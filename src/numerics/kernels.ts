@@ -18,7 +18,7 @@ export function kernelFor(n: number): Kernel {
     default:
       return {
         rows: (a, count, b, out) => rowsAny(n, a, count, b, out),
-        columns: (b, c, count, out) => columnsAny(n, b, c, count, out),
+        columns: (a, count, c, columns, out) => columnsAny(n, a, count, c, columns, out),
         march: (b, states, count) => marchAny(n, b, states, count),
         balance: (a, count) => balanceAny(n, a, count)
       }
@@ -54,12 +54,20 @@ function rowsAny(n: number, a: Float64Array, count: number, b: Float64Array, out
   }
 }
 
-function columnsAny(n: number, b: Float64Array, c: Float64Array, count: number, out: Float64Array): void {
-  for (let p = 0; p < n * count; p += n) {
-    for (let i = 0; i < n; i++) {
+function columnsAny(
+  n: number,
+  a: Float64Array,
+  count: number,
+  c: Float64Array,
+  columns: number,
+  out: Float64Array
+): void {
+  let q = 0
+  for (let column = 0; column < n * columns; column += n) {
+    for (let p = 0; p < n * count; p += n) {
       let sum = 0
-      for (let k = 0; k < n; k++) sum += b[i * n + k] * c[p + k]
-      out[p + i] = sum
+      for (let k = 0; k < n; k++) sum += a[p + k] * c[column + k]
+      out[q++] = sum
     }
   }
 }

@@ -34,11 +34,11 @@ export class LinearOperators {
   readonly #form: NonnegativeForm
   readonly #kernel: Kernel
   readonly #series: OperatorSeries
-  readonly #plan: TaylorPlan = { degree: 0, squarings: 0 }
+  readonly #plan: TaylorPlan = { degree: 0, stride: 0, squarings: 0 }
   /** X above the rows R, the sink first: one block for one product, doubled from one into the other. */
   #block: Float64Array
   #next: Float64Array
-  /** Phi, one column after another; X Phi; and H, a row for each functional. */
+  /** Phi, one column after another; X Phi above R Phi, likewise; and H, a row for each functional. */
   readonly #columns: Float64Array
   readonly #products: Float64Array
   readonly #direct: Float64Array
@@ -60,7 +60,7 @@ export class LinearOperators {
     this.#block = new Float64Array((n + f) * n)
     this.#next = new Float64Array((n + f) * n)
     this.#columns = new Float64Array(n * m)
-    this.#products = new Float64Array(n * m)
+    this.#products = new Float64Array((n + f) * m)
     this.#direct = new Float64Array(f * m)
     this.#stepDecays = new Float64Array(f).fill(1)
     this.#exponents = new Float64Array(f)
@@ -87,16 +87,16 @@ export class LinearOperators {
     if (!(duration >= 0 && duration < Number.POSITIVE_INFINITY)) {
       throw new RangeError(`a duration must be finite and not negative, got ${duration}`)
     }
-    const { n, m, f, sigma } = this.#form
+    const { n, sigma } = this.#form
     const reach = sigma * duration
     if (!(reach < FARTHEST)) throw new NumericalFailure('out-of-range', `rate x duration is ${reach}`)
     const plan = this.#plan
-    planInto(reach, n, f + m, plan)
+    planInto(reach, n, plan)
     let step = duration
     for (let k = 0; k < plan.squarings; k++) step *= 0.5
-    this.#series.into(step, plan.degree, this.#block, this.#columns, this.#direct)
-    this.#balance()
     this.#step[0] = step
+    this.#series.into(this.#step, plan, this.#block, this.#columns, this.#direct)
+    this.#balance()
     for (let k = 0; k < plan.squarings; k++) {
       this.#decay()
       this.#double()
@@ -124,19 +124,20 @@ export class LinearOperators {
     const columns = this.#columns
     const direct = this.#direct
     const products = this.#products
+    const decays = this.#stepDecays
     this.#kernel.rows(block, n + f, block, next)
+    this.#kernel.columns(block, n + f, columns, m, products)
     for (let r = 0; r < f; r++) {
-      const decay = this.#stepDecays[r]
+      const decay = decays[r]
       const row = (n + r) * n
-      for (let c = 0; c < m; c++) {
-        let sum = 0
-        for (let j = 0; j < n; j++) sum += block[row + j] * columns[c * n + j]
-        direct[r * m + c] += decay * direct[r * m + c] + sum
-      }
-      for (let j = 0; j < n; j++) next[row + j] += decay * block[row + j]
+      for (let p = row; p < row + n; p++) next[p] += decay * block[p]
+      for (let c = 0; c < m; c++) direct[r * m + c] += decay * direct[r * m + c] + products[c * (n + f) + n + r]
     }
-    this.#kernel.columns(block, columns, m, products)
-    for (let p = 0; p < n * m; p++) columns[p] += products[p]
+    for (let c = 0; c < m; c++) {
+      const column = c * n
+      const product = c * (n + f)
+      for (let i = 0; i < n; i++) columns[column + i] += products[product + i]
+    }
     this.#block = next
     this.#next = block
     this.#balance()

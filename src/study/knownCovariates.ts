@@ -2,7 +2,7 @@ import type { CovariateUnit, DeclaredCovariate } from '../patient/drugModel'
 import type { ComputedCovariate, TypedCovariate } from '../patient/person'
 import { type Quantity, ratioOf } from '../units/quantity'
 import { applyInverse, quotient } from '../units/ratio'
-import { KINDS, type Kind, unitOf } from '../units/unitTable'
+import { KINDS, type Kind, unitOf, unitsOf } from '../units/unitTable'
 import type { Problems } from './problems'
 import { unitProblem } from './unitProblem'
 
@@ -107,4 +107,10 @@ export function covariateValue(
 ): number {
   const unit = covariateUnit(covariate, quantity.unit, path, problems)
   return unit === undefined ? Number.NaN : applyInverse(unit, quantity.value)
+}
+
+/** The widest kind whose units a model's own covariate may be typed in; undefined where there is only its own unit. */
+export function kindOfOwn(unit: string): Kind | undefined {
+  const kinds = FREE_KINDS.filter((kind) => unitOf(kind, unit) !== undefined)
+  return kinds.toSorted((a, b) => unitsOf(b).length - unitsOf(a).length)[0]
 }

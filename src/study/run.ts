@@ -23,8 +23,9 @@ export type StudyOutcome =
 /**
  * Run a study: the individual over every stretch of time, then every regimen in it. Issues where a covariate is missing, a
  * parameter cannot be, a prescription cannot be written out, the table would be too long or the model fails its own checks.
+ * `doing` is told, in words, what is being computed.
  */
-export function runStudy(study: Study): StudyOutcome {
+export function runStudy(study: Study, doing: (what: string) => void = () => undefined): StudyOutcome {
   const individuals = individualsOf(study)
   const tooLong = tooManyRows(study.sampling, study.sampling.until)
   const early = [
@@ -40,6 +41,7 @@ export function runStudy(study: Study): StudyOutcome {
   const regimens: RegimenResult[] = []
   const cautions: string[] = []
   study.regimens.forEach((regimen, index) => {
+    doing(`computing "${regimen.name}"`)
     const request: CourseRequest = {
       prescription: regimen,
       stretches: stretches.map(({ from, individual }) => ({ from, subject: individual.subject })),

@@ -14,7 +14,7 @@ for (const n of [1, 2, 3, 4, 5, 6, 9]) {
     const rows = new Float64Array(count * n)
     const columns = new Float64Array(count * n)
     kernelFor(n).rows(a, count, b, rows)
-    kernelFor(n).columns(b, a, count, columns)
+    kernelFor(n).columns(b, n, a, count, columns)
     for (let p = 0; p < count; p++) {
       for (let q = 0; q < n; q++) {
         let row = 0
@@ -36,7 +36,7 @@ for (const n of [1, 2, 3, 4, 5, 6, 9]) {
     kernelFor(n).march(b, states, 3)
     for (const step of [1, 2, 3]) {
       const expected = new Float64Array(n)
-      kernelFor(n).columns(b, states.slice((step - 1) * n, step * n), 1, expected)
+      kernelFor(n).columns(b, n, states.slice((step - 1) * n, step * n), 1, expected)
       expect([...states.slice(step * n, (step + 1) * n)]).toEqual([...expected])
     }
   })

@@ -18,8 +18,8 @@ function doublings(model: ReferenceModel, duration: number): number {
     ...Array.from({ length: model.size }, (_, j) => outflow(rates, j)),
     ...functionals.map(({ decay }) => decay)
   )
-  const plan = { degree: 0, squarings: 0 }
-  planInto(sigma * duration, model.size, functionals.length + 1 + model.inputs.length, plan)
+  const plan = { degree: 0, stride: 0, squarings: 0 }
+  planInto(sigma * duration, model.size, plan)
   return plan.squarings
 }
 

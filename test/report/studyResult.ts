@@ -1,6 +1,7 @@
 import { readFileSync } from 'node:fs'
 import { pageOf } from '../../src/report/page/pageOf'
 import { readStudy } from '../../src/study/file/readStudy'
+import type { StudyFile } from '../../src/study/file/studySchema'
 import type { StudyResult } from '../../src/study/result'
 import { runStudy } from '../../src/study/run'
 
@@ -28,5 +29,6 @@ export function resultOf(study: Edited): StudyResult {
 }
 
 export function pageOfStudy(study: Edited) {
-  return pageOf(resultOf(study), study)
+  // What was read as a study file is one.
+  return pageOf(resultOf(study), study as unknown as StudyFile)
 }

@@ -1,10 +1,11 @@
 import type { Issue } from '../../pk/issue'
 import type { PageView } from '../../report/page/page'
 import type { SaturationView } from '../../report/page/saturationView'
+import type { StudyFile } from '../../study/file/studySchema'
 
-/** What became of a file: a page, or everything that is wrong with it. */
+/** What became of a file: its content and its page, or everything that is wrong with it. */
 export type Outcome =
-  | { readonly ok: true; readonly page: PageView }
+  | { readonly ok: true; readonly file: StudyFile; readonly page: PageView }
   | { readonly ok: false; readonly issues: readonly Issue[] }
 
 export interface RowsAsked {
@@ -22,13 +23,12 @@ export interface NamedFile {
   readonly content: Blob
 }
 
-/**
- * What the worker does for the page. It keeps the last study that could be computed: rows and files are of that one,
- * as the page shows it.
- */
+/** What the worker does for the page. Rows and files are of the last study that the page took up, which it shows. */
 export interface PageWorker {
-  /** Validate a study file, compute it and lay the page out; downloads are named after the file. */
-  open(file: Blob, name: string): Promise<Outcome>
+  /** Validate a study file, compute it and lay the page out; `doing` is told what is being done. */
+  open(file: Blob, doing?: (what: string) => void): Promise<Outcome>
+  /** The page shows the last study that was opened from now on; downloads are named after the file. */
+  takeUp(name: string): Promise<void>
   /** Rows of the concentration table as the screen shows them. */
   rows(asked: RowsAsked): Promise<readonly (readonly string[])[]>
   /** What saturation makes of the dose; undefined for a linear model. */

@@ -7,6 +7,8 @@ import type { Prose } from './prose'
  */
 export interface PageView {
   readonly title: string
+  /** The title as it is edited in place. */
+  readonly heading: Prose
   /** Program version and study hash: what makes the page reproducible. */
   readonly provenance: string
   /** Cautions that apply to this study; empty where none does. */
@@ -26,7 +28,7 @@ export interface RegimenLabel {
   readonly style: number
 }
 
-/** The consult note, read only. */
+/** The consult note; what was typed in it carries its place in the study file. */
 export interface NoteView {
   readonly patient: readonly Prose[]
   /** Size and renal estimates side by side, a column a stretch of time. */
@@ -35,6 +37,8 @@ export interface NoteView {
   readonly model: ModelView
   readonly regimens: readonly RegimenNote[]
   readonly targets: readonly Prose[]
+  /** How far and how finely the study is computed, in sentences. */
+  readonly course: Prose
   /** What was found, in sentences. */
   readonly findings: readonly Prose[]
 }
@@ -74,9 +78,26 @@ export interface ModelView {
 
 export interface RegimenNote {
   readonly label: RegimenLabel
+  /** Its name as it is edited in place. */
+  readonly name: Prose
   readonly sentence: Prose
   /** What was done with the prescription and a reader must know. */
   readonly notes: readonly string[]
+  /** How many dose lines it has. */
+  readonly lines: number
+  /** Each scheduled dose, the first of a long list only. */
+  readonly doses: readonly ScheduledDose[]
+  /** Why it cannot be removed; empty where it can. */
+  readonly keptBecause: string
+}
+
+export interface ScheduledDose {
+  /** Position of the dose line, and the number of the dose in it from 1. */
+  readonly line: number
+  readonly number: number
+  readonly missed: boolean
+  /** `36 h: 500 mg`. */
+  readonly text: string
 }
 
 /** A table of quantities (rows) by regimens or the like (columns). */

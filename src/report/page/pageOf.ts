@@ -1,10 +1,11 @@
+import type { StudyFile } from '../../study/file/studySchema'
 import type { StudyResult } from '../../study/result'
-import type { Quantity } from '../../units/quantity'
 import { PROGRAM_VERSION } from '../version'
 import { chartOf } from './chartOf'
 import { estimatesView } from './estimates'
 import { exposureGrids } from './exposureGrids'
 import { foundSentences } from './found'
+import { Marks } from './marks'
 import { modelNote } from './modelNote'
 import type { PageView } from './page'
 import { patientNote } from './patientNote'
@@ -14,28 +15,32 @@ import { regimenLabels } from './regimenLabel'
 import { regimenNote } from './regimenNote'
 import { polished, sentence, showingOf } from './showing'
 import { tableView } from './tableView'
-import { targetSentence } from './targetWords'
+import { courseSentence, targetSentence } from './targetNote'
 
 /**
- * The page of one study: everything that is shown, as plain data. Pure; the same result gives the same page.
- * `file` is the study as it was typed: values in other units than the core's are echoed from it.
+ * The page of one study: everything that is shown, as plain data. Pure; the same result gives the same page. With the file
+ * that the study was read from, what was typed is shown as it was typed and can be edited; without it the page is to be read.
  */
-export function pageOf(result: StudyResult, file?: TypedStudy): PageView {
+export function pageOf(result: StudyResult, file?: StudyFile): PageView {
   const { study } = result
   const showing = showingOf(study)
+  const marks = new Marks(file, result.questions, study.drugModel.drug.molarMass)
+  const context = { result, showing, marks }
   const labels = regimenLabels(result.regimens.map(({ name }) => name))
   return {
     title: study.title,
+    heading: [marks.text(['title'], study.title, 'title of the study', LONGEST_TITLE, true)],
     provenance: `Phasewise ${PROGRAM_VERSION}, study ${study.hash}`,
     cautions: result.cautions.map((caution) => sentence(polished(caution))),
     regimens: labels,
     note: {
-      patient: patientNote(study, showing, (path, name) => typedValue(file, path, name)),
+      patient: patientNote(study, showing, marks),
       estimates: estimatesView(result, showing),
       population: populationLines(result),
       model: modelNote(result, showing),
-      regimens: result.regimens.map((regimen, k) => regimenNote(regimen, labels[k]!, result, showing)),
-      targets: study.targets.map((target) => targetSentence(target, study, showing)),
+      regimens: result.regimens.map((regimen, k) => regimenNote(regimen, k, labels[k]!, context)),
+      targets: study.targets.map((target, k) => targetSentence(target, k, study, showing, marks)),
+      course: courseSentence(study, showing, marks),
       findings: foundSentences(result, labels, showing)
     },
     chart: chartOf(result, labels, showing),
@@ -45,20 +50,4 @@ export function pageOf(result: StudyResult, file?: TypedStudy): PageView {
   }
 }
 
-/** Of a study file what the page echoes: the patient's values and what they change to. */
-export interface TypedStudy {
-  readonly patient: object
-}
-
-function typedValue(file: TypedStudy | undefined, path: string, name: string): Quantity | undefined {
-  if (file === undefined) return undefined
-  const changes = (file.patient as { readonly changes?: readonly object[] }).changes ?? []
-  const position = /^patient\.changes\[(\d+)\]$/.exec(path)?.[1]
-  const place = position === undefined ? file.patient : changes[Number(position)]
-  const found = (place as Readonly<Record<string, unknown>> | undefined)?.[name]
-  return isQuantity(found) ? found : undefined
-}
-
-function isQuantity(found: unknown): found is Quantity {
-  return typeof found === 'object' && found !== null && 'value' in found && 'unit' in found
-}
+const LONGEST_TITLE = 500

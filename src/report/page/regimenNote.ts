@@ -1,72 +1,179 @@
 import type { DoseLine, Exception, Reckoned } from '../../pk/prescription'
+import type { Choice } from '../../study/edit/place'
+import { isMeasured } from '../../study/edit/regimens'
+import type { Step } from '../../study/path'
 import type { RegimenResult, StudyResult } from '../../study/result'
 import { multipleOf } from '../../units/spacing'
-import { percent, typed, withUnit } from './number'
+import { choicesOf, type Marks } from './marks'
+import { typed, withUnit } from './number'
 import type { RegimenLabel, RegimenNote } from './page'
 import { type Marked, value } from './prose'
-import { listed, polished, type Showing, sentence } from './showing'
+import { polished, type Showing, sentence } from './showing'
 
 /** A regimen in words: each line of doses with what became of them, and what was done with the prescription. */
 export function regimenNote(
   regimen: RegimenResult,
+  index: number,
   label: RegimenLabel,
-  result: StudyResult,
-  showing: Showing
+  { result, showing, marks }: NoteContext
 ): RegimenNote {
   const { prescription } = regimen.course
+  const at = ['regimens', index]
   const prose: (string | Marked)[] = []
-  if (prescription.start === 'steady-state') prose.push('In the steady state of its repeating doses at time 0: ')
+  if (prescription.start === 'steady-state') {
+    const start = marks.choice([...at, 'start'], 'steady state', 'start', [
+      { value: 'empty', text: 'start empty' },
+      { value: 'steady-state', text: 'steady state' }
+    ])
+    prose.push('In the ', start, ' of its repeating doses at time 0: ')
+  }
   prescription.lines.forEach((line, k) => {
     const before = prescription.lines[k - 1]
-    prose.push(...(k === 0 ? [] : [', then ']), ...lineInWords(line, k, before, regimen, result, showing))
+    const context = { line, at: [...at, 'doses', k], index: k, before, regimen, result, showing, marks }
+    prose.push(...(k === 0 ? [] : [', then ']), ...lineInWords(context))
   })
   prose.push('.')
-  return { label, sentence: prose, notes: regimen.notes.map((note) => sentence(polished(note))) }
+  return {
+    label,
+    name: [marks.text([...at, 'name'], label.name, `name of regimen ${label.letter}`, LONGEST_NAME)],
+    sentence: prose,
+    notes: regimen.notes.map((note) => sentence(polished(note))),
+    lines: prescription.lines.length,
+    doses: scheduledDoses(regimen, showing),
+    keptBecause: marks.file !== undefined && isMeasured(marks.file, label.name) ? 'levels were measured under it' : ''
+  }
 }
 
-function lineInWords(
-  line: DoseLine,
-  index: number,
-  before: DoseLine | undefined,
-  regimen: RegimenResult,
-  result: StudyResult,
-  showing: Showing
-): (string | Marked)[] {
-  const prose: (string | Marked)[] = []
-  const reckoned = line.rate ?? line.amount
-  if (reckoned === undefined) throw new RangeError('a dose line has an amount or a rate')
-  prose.push(value(reckonedInWords(reckoned, line.rate !== undefined, line, showing)))
-  const given = regimen.course.administrations.find((one) => one.line === index && !one.missed)
-  const aside: string[] = []
-  if (given !== undefined && (reckoned.per !== 'dose' || line.rate !== undefined)) {
-    aside.push(showing.typedAmount(given.productAmount))
+const LONGEST_NAME = 200
+
+export interface NoteContext {
+  readonly result: StudyResult
+  readonly showing: Showing
+  readonly marks: Marks
+}
+
+interface LineContext extends NoteContext {
+  readonly line: DoseLine
+  /** Where the line stands in the file. */
+  readonly at: readonly Step[]
+  readonly index: number
+  readonly before: DoseLine | undefined
+  readonly regimen: RegimenResult
+}
+
+/** Scheduled doses listed one by one; a longer list is no help. */
+const MOST_LISTED = 200
+
+function scheduledDoses(regimen: RegimenResult, showing: Showing): RegimenNote['doses'] {
+  return regimen.course.administrations
+    .filter(({ number }) => number > 0)
+    .slice(0, MOST_LISTED)
+    .map(({ line, number, missed, at, productAmount }) => ({
+      line,
+      number,
+      missed,
+      text: missed ? showing.typedTime(at) : `${showing.typedTime(at)}: ${showing.typedAmount(productAmount)}`
+    }))
+}
+
+function lineInWords(context: LineContext): (string | Marked)[] {
+  const { line, at, before, result, showing, marks } = context
+  const prose: (string | Marked)[] = [...reckonedMark(context), ...asideInWords(context)]
+  if (line.product !== undefined) {
+    const products = result.study.drugModel.drug.products.map(({ name }) => ({ value: name, text: name }))
+    prose.push(' of ', marks.choice([...at, 'product'], line.product, 'product', products))
   }
-  if (line.atMost !== undefined) aside.push(`at most ${showing.typedAmount(line.atMost)}`)
-  if (line.product !== undefined && given !== undefined) {
-    aside.push(`${showing.typedAmount(given.amount)} of ${result.study.drugModel.drug.moiety}`)
+  if (before?.route !== line.route || marks.file !== undefined) {
+    prose.push(' ', marks.choice([...at, 'route'], routeInWords(line.route), 'route', routeChoices(line, result)))
   }
-  if (aside.length > 0) prose.push(' (', value(aside.join(', ')), ')')
-  if (line.product !== undefined) prose.push(` of ${line.product}`)
-  if (before?.route !== line.route) prose.push(` ${routeInWords(line.route)}`)
-  if (line.over !== undefined) prose.push(' over ', value(showing.typedTime(line.over)))
-  else if (routeInput(result, line.route) === 'infusion') prose.push(' as a bolus')
-  if (line.every === undefined) prose.push(' at ', value(showing.typedTime(line.at)))
+  if (line.over !== undefined) {
+    prose.push(' over ', timeMark('over', line.over, 'length of the infusion', context))
+  } else if (routeInput(result, line.route) === 'infusion') prose.push(' as a bolus')
+  if (line.every === undefined) prose.push(' at ', timeMark('at', line.at, 'time of the dose', context))
   else {
-    prose.push(' every ', value(showing.typedTime(multipleOf(line.every, 1))))
-    prose.push(' from ', value(showing.typedTime(line.at)))
-    if (line.count !== undefined) prose.push(', ', value(line.count === 1 ? 'once' : `${line.count} times`))
+    prose.push(' every ', timeMark('every', multipleOf(line.every, 1), 'interval', context))
+    prose.push(' from ', timeMark('at', line.at, 'time of the first dose', context))
+    const { count } = line
+    if (count !== undefined || marks.file !== undefined) {
+      const read = count === undefined ? 'to the end' : count === 1 ? 'once' : `${count} times`
+      prose.push(', ', marks.whole([...at, 'count'], read, 'number of doses', true))
+    }
   }
   if (line.exceptions.length > 0) {
-    prose.push(' (', value(listed(line.exceptions.map((exception) => departureInWords(exception, showing)))), ')')
+    const said = line.exceptions.map((exception, k) =>
+      departureInWords(exception, [...at, 'exceptions', k], showing, marks)
+    )
+    prose.push(' (')
+    said.forEach((part, k) => {
+      prose.push(...(k === 0 ? [] : [k === said.length - 1 ? ' and ' : ', ']), ...part)
+    })
+    prose.push(')')
   }
   return prose
 }
 
-function reckonedInWords(reckoned: Reckoned, rate: boolean, line: DoseLine, showing: Showing): string {
+/**
+ * The routes, each with how a dose is given on it, in so many words: the first of the present route is how it is now. Off
+ * the routes of infusions a dose has no length; a rate runs for its time on any route.
+ */
+function routeChoices(line: DoseLine, { study }: StudyResult): readonly Choice[] {
+  return study.drugModel.routes.flatMap(({ name, input }): Choice[] => {
+    const text = routeInWords(name)
+    const asNow: Choice = { value: name, text }
+    if (line.rate !== undefined) return [asNow]
+    if (input !== 'infusion') {
+      return name === line.route ? [asNow] : [{ ...asNow, beside: { over: undefined, bolus: undefined } }]
+    }
+    const bolus = { value: name, text: `${text} as a bolus`, beside: { over: undefined, bolus: true } }
+    if (line.over !== undefined) return [asNow, bolus]
+    const beside = { over: { value: 1, unit: 'h' }, bolus: undefined }
+    const over = { value: name, text: `${text} over 1\u00a0h`, beside }
+    return name === line.route ? [asNow, over] : [over, bolus]
+  })
+}
+
+function timeMark(key: string, hours: number, label: string, { at, showing, marks }: LineContext): Marked {
+  const sign = key === 'at' ? 'not negative' : 'positive'
+  return marks.quantity([...at, key], showing.typedTime(hours), { label, of: 'time', sign })
+}
+
+function reckonedMark({ line, at, showing, marks }: LineContext): (string | Marked)[] {
+  const reckoned = line.rate ?? line.amount
+  if (reckoned === undefined) throw new RangeError('a dose line has an amount or a rate')
+  const mark =
+    line.rate === undefined
+      ? marks.quantity([...at, 'amount'], reckonedInWords(reckoned, false, showing), { label: 'dose', of: 'dose' })
+      : marks.quantity([...at, 'rate'], reckonedInWords(reckoned, true, showing), { label: 'rate', of: 'doseRate' })
+  if (line.by === undefined || reckoned.per !== 'kg') return [mark]
+  const by = marks.choice([...at, 'by'], WEIGHTS[line.by], 'weight that the dose is reckoned by', WEIGHT_CHOICES)
+  return [mark, ' by ', by, ' weight']
+}
+
+/** What a dose comes to, its cap and its moiety, in brackets behind it. */
+function asideInWords({ line, at, index, regimen, result, showing, marks }: LineContext): (string | Marked)[] {
+  const reckoned = line.rate ?? line.amount
+  const given = regimen.course.administrations.find((one) => one.line === index && !one.missed)
+  const aside: (string | Marked)[][] = []
+  if (given !== undefined && (reckoned?.per !== 'dose' || line.rate !== undefined)) {
+    aside.push([value(showing.typedAmount(given.productAmount))])
+  }
+  if (line.atMost !== undefined) {
+    const most = marks.quantity([...at, 'atMost'], showing.typedAmount(line.atMost), {
+      label: 'most of one dose',
+      of: 'amount'
+    })
+    aside.push(['at most ', most])
+  }
+  if (line.product !== undefined && given !== undefined) {
+    aside.push([value(`${showing.typedAmount(given.amount)} of ${result.study.drugModel.drug.moiety}`)])
+  }
+  if (aside.length === 0) return []
+  return [' (', ...aside.flatMap((part, k) => (k === 0 ? part : [', ', ...part])), ')']
+}
+
+function reckonedInWords(reckoned: Reckoned, rate: boolean, showing: Showing): string {
   const per = reckoned.per === 'dose' ? '' : `/${reckoned.per}`
-  const unit = `${showing.amountUnit}${per}${rate ? '/h' : ''}`
-  const by = line.by === undefined || reckoned.per !== 'kg' ? '' : ` by ${WEIGHTS[line.by]} weight`
-  return `${withUnit(typed(showing.amount(reckoned.value)), unit)}${by}`
+  return withUnit(typed(showing.amount(reckoned.value)), `${showing.amountUnit}${per}${rate ? '/h' : ''}`)
 }
 
 const WEIGHTS = {
@@ -77,23 +184,36 @@ const WEIGHTS = {
   actualIfBelowIdeal: 'actual, if below ideal,',
   adjustedAbove120PercentIdeal: 'adjusted, above 120\u00a0% of ideal,'
 } as const
+const WEIGHT_CHOICES = choicesOf(Object.entries(WEIGHTS))
 
-function departureInWords(exception: Exception, showing: Showing): string {
-  const which = `dose\u00a0${exception.number}`
-  if (exception.missed === true) return `${which} missed`
-  const said: string[] = []
-  if (exception.lateBy !== undefined) {
-    said.push(`${showing.typedTime(Math.abs(exception.lateBy))} ${exception.lateBy < 0 ? 'early' : 'late'}`)
-    if (exception.shiftsLater === true) said.push('and the later ones with it')
+function departureInWords(
+  exception: Exception,
+  at: readonly Step[],
+  showing: Showing,
+  marks: Marks
+): (string | Marked)[] {
+  const which = marks.whole([...at, 'number'], String(exception.number), 'number of the dose', false)
+  if (exception.missed === true) return ['dose\u00a0', which, ' missed']
+  const time = (key: string, hours: number, label: string) =>
+    marks.quantity([...at, key], showing.typedTime(hours), { label, of: 'time' })
+  const said: (string | Marked)[][] = []
+  const { lateBy, amount, over, stoppedAfter, fractionTaken } = exception
+  if (lateBy !== undefined) {
+    const shown = showing.typedTime(Math.abs(lateBy))
+    const mark = { label: 'late by', of: 'time', sign: 'any', ...(lateBy < 0 && { shown }) } as const
+    const shifts = exception.shiftsLater === true ? ', and the later ones with it' : ''
+    said.push([marks.quantity([...at, 'lateBy'], shown, mark), `${lateBy < 0 ? ' early' : ' late'}${shifts}`])
   }
-  if (exception.amount !== undefined) {
-    const per = exception.amount.per === 'dose' ? '' : `/${exception.amount.per}`
-    said.push(`${withUnit(typed(showing.amount(exception.amount.value)), `${showing.amountUnit}${per}`)} instead`)
+  if (amount !== undefined) {
+    const read = reckonedInWords(amount, false, showing)
+    said.push([marks.quantity([...at, 'amount'], read, { label: 'dose instead', of: 'dose' }), ' instead'])
   }
-  if (exception.over !== undefined) said.push(`over ${showing.typedTime(exception.over)}`)
-  if (exception.stoppedAfter !== undefined) said.push(`stopped after ${showing.typedTime(exception.stoppedAfter)}`)
-  if (exception.fractionTaken !== undefined) said.push(`${percent(exception.fractionTaken)} taken`)
-  return `${which} ${said.join(', ')}`
+  if (over !== undefined) said.push(['over ', time('over', over, 'length of this infusion')])
+  if (stoppedAfter !== undefined) said.push(['stopped after ', time('stoppedAfter', stoppedAfter, 'stopped after')])
+  if (fractionTaken !== undefined) {
+    said.push([marks.share([...at, 'fractionTaken'], fractionTaken, 'share of the dose taken'), ' taken'])
+  }
+  return ['dose\u00a0', which, ' ', ...said.flatMap((part, k) => (k === 0 ? part : [', ', ...part]))]
 }
 
 /** Trade routes as adverbs; any other by its own name. */

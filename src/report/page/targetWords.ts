@@ -3,26 +3,12 @@ import type { TargetResult } from '../../pk/targetMet'
 import type { Study } from '../../study/study'
 import { fromCanonical } from '../../units/quantity'
 import { percent, significant, typed, withUnit } from './number'
-import { type Marked, type Prose, value } from './prose'
+import { type Prose, value } from './prose'
 import type { Showing } from './showing'
 
-/** A target in words: its limits as they were typed, over which stretches, and what it is for. */
-export function targetSentence(target: Target, study: Study, showing: Showing): Prose {
-  const role = target.role === undefined ? '' : ` (${target.role})`
-  const { begin, limits, rest } = parts(target, study, showing)
-  const unbound = isUnbound(target, study) ? ', unbound' : ''
-  const of = signalName(target, study)
-  const prose: (string | Marked)[] = [
-    `${begin}${of} `,
-    value(limits),
-    `${unbound}${rest}, ${whenInWords(target.when)}${role}.`
-  ]
-  return prose
-}
-
-/** The same, short enough for the head of a row. */
+/** A target in words, short enough for the head of a row. */
 export function targetHead(target: Target, study: Study, showing: Showing): string {
-  const { begin, limits, rest } = parts(target, study, showing)
+  const { begin, limits, rest } = partsOf(target, study, showing)
   const unbound = isUnbound(target, study) ? ', unbound' : ''
   return `${begin}${signalName(target, study)} ${limits}${unbound}${rest}, ${whenInWords(target.when)}`
 }
@@ -42,14 +28,14 @@ export function outcomePhrase(result: TargetResult, study: Study, showing: Showi
       target.kind === 'window'
         ? 'in the window'
         : target.kind === 'time-above'
-          ? `above ${limit(target, target.low, study, showing)}`
-          : `below ${limit(target, target.high, study, showing)}`
+          ? `above ${limitText(target, target.low, study, showing)}`
+          : `below ${limitText(target, target.high, study, showing)}`
     return {
       said: [`${unbound}${where}${of === '' ? '' : `${of},`} `, worst, ` of the time${when}`],
       asked: `at least ${percent(target.share)}`
     }
   }
-  const { begin } = parts(target, study, showing)
+  const { begin } = partsOf(target, study, showing)
   const name = begin.startsWith('AUC') ? begin : begin.toLowerCase()
   const which =
     when !== '' ? '' : target.low === undefined ? 'highest ' : target.high === undefined ? 'lowest ' : 'worst '
@@ -113,16 +99,20 @@ export function totalLimits(target: Target): { low: number; high: number } {
   return { low: (target.low ?? 0) / target.factor, high: (target.high ?? 0) / target.factor }
 }
 
-function parts(target: Target, study: Study, showing: Showing): { begin: string; limits: string; rest: string } {
+export function partsOf(
+  target: Target,
+  study: Study,
+  showing: Showing
+): { begin: string; limits: string; rest: string } {
   const between = limitsInWords(target, study, showing)
   const share = target.share === 1 ? ' all the time' : ` for at least ${percent(target.share)} of the time`
   switch (target.kind) {
     case 'window':
       return { begin: 'Level', limits: between, rest: share }
     case 'time-above':
-      return { begin: 'Level', limits: `above ${limit(target, target.low, study, showing)}`, rest: share }
+      return { begin: 'Level', limits: `above ${limitText(target, target.low, study, showing)}`, rest: share }
     case 'time-below':
-      return { begin: 'Level', limits: `below ${limit(target, target.high, study, showing)}`, rest: share }
+      return { begin: 'Level', limits: `below ${limitText(target, target.high, study, showing)}`, rest: share }
     case 'level': {
       const after = `${showing.typedTime(target.after ?? 0)} after the ${target.from === 'dose end' ? 'end' : 'start'} of a dose`
       return { begin: 'Level', limits: between, rest: ` ${after}` }
@@ -150,14 +140,14 @@ function limitsInWords(target: Target, study: Study, showing: Showing): string {
   const { low, high } = target
   if (low !== undefined && high !== undefined) {
     const from = inUnit(target, low, study, showing)
-    return `${typed(from.number)} to ${limit(target, high, study, showing)}`
+    return `${typed(from.number)} to ${limitText(target, high, study, showing)}`
   }
   return low === undefined
-    ? `at most ${limit(target, high, study, showing)}`
-    : `at least ${limit(target, low, study, showing)}`
+    ? `at most ${limitText(target, high, study, showing)}`
+    : `at least ${limitText(target, low, study, showing)}`
 }
 
-function limit(target: Target, value: number | undefined, study: Study, showing: Showing): string {
+export function limitText(target: Target, value: number | undefined, study: Study, showing: Showing): string {
   if (value === undefined) throw new RangeError(`a target of the kind ${target.kind} lacks a limit`)
   const { number, unit } = inUnit(target, value, study, showing)
   return withUnit(typed(number), unit)
@@ -183,7 +173,7 @@ function inUnit(target: Target, value: number, study: Study, showing: Showing): 
 }
 
 /** The free fraction is in the factor, alone or over the MIC. */
-function isUnbound(target: Target, study: Study): boolean {
+export function isUnbound(target: Target, study: Study): boolean {
   const fraction = study.drugModel.drug.fractionUnbound
   if (fraction === undefined || fraction === 1) return false
   const alone = target.unit === 'mg/L' || target.unit === 'mg.h/L' ? target.factor : target.factor * (study.mic ?? 1)
@@ -191,7 +181,7 @@ function isUnbound(target: Target, study: Study): boolean {
 }
 
 /** ` at effect-site` where the target is not of the observed concentration. */
-function signalName(target: Target, study: Study): string {
+export function signalName(target: Target, study: Study): string {
   const { signal } = target
   if (signal.kind === 'observed') return ''
   const { drugModel } = study

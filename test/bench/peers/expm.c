@@ -62,7 +62,7 @@ static void plan(double scale, int *degree, int *stride, int *squarings) {
     for (left = bits; left >= m; left -= m) s++;
     for (; left > 0; left--) excess *= 2;
     for (; excess > 1; excess *= shrink) s++;
-    double cost = N * (strides[d] - 1 + m / strides[d] - 1 + s) + (F + 1) * (double)(m + s);
+    double cost = strides[d] - 1 + 2.5 * (m / strides[d] - 1) + 1.7 * s;
     if (cost < cheapest) cheapest = cost, *degree = m, *stride = strides[d], *squarings = s;
   }
 }
