@@ -32,7 +32,7 @@ export function Header(props: { desk: StudyDesk }) {
         {desk.slow() ? `${desk.doing()} …` : desk.busy() ? 'Computing …' : ''}
       </span>
       <Show when={desk.slow()}>
-        <button type="button" onClick={() => void desk.stop()}>
+        <button type="button" onClick={desk.stop}>
           Stop
         </button>
       </Show>

@@ -43,10 +43,10 @@ export class Runs {
     })
   }
 
-  /** Stop the run that goes on; it comes to an issue that says what it was doing. */
-  stop(): void {
+  /** Stop the run that goes on; it comes to an issue that says what it was doing. `restore` is for the next worker. */
+  stop(restore: Parameters<WorkerClient['restart']>[0]): void {
     if (this.#stopped === undefined) return
-    this.#client.restart()
+    this.#client.restart(restore)
     this.#stopped({ ok: false, issues: [{ path: '', message: `stopped while ${this.#doing}` }] })
   }
 

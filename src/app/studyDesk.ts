@@ -114,12 +114,13 @@ export function createStudyDesk(client: WorkerClient) {
   }
 
   /** Stop the run that goes on. The worker that takes over is given the study that the page shows. */
-  async function stop(): Promise<void> {
-    runs.stop()
+  function stop(): void {
     const shows = good()
-    if (shows === undefined) return
-    const outcome = await worker.open(contentOf(shows)).catch(() => undefined)
-    if (outcome?.ok === true && good() === shows) await worker.takeUp(shows.name)
+    runs.stop(async (next) => {
+      if (shows === undefined) return
+      const outcome = await next.open(contentOf(shows))
+      if (outcome.ok) await next.takeUp(shows.name)
+    })
   }
 
   function travel(step: (all: History<Draft>) => History<Draft>): void {

@@ -65,7 +65,7 @@ test('a run that goes on for too long can be stopped: it says what it was doing,
   await vi.advanceTimersByTimeAsync(2)
   expect(slow).toEqual([true])
   vi.useRealTimers()
-  runs.stop()
+  runs.stop(async () => undefined)
   expect(said(await first)).toBe('stopped while computing "A"')
   expect(restarts()).toBe(1)
   expect(slow).toEqual([true, false])

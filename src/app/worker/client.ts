@@ -4,8 +4,11 @@ import type { PageWorker } from './protocol'
 /** The worker as the page knows it, and the way to end what it is doing. */
 export interface WorkerClient {
   readonly worker: PageWorker
-  /** End the worker in the middle of whatever it does and start another, which has seen no study yet. */
-  restart(): void
+  /**
+   * End the worker in the middle of whatever it does and start another. `restore` gives it what it must know before it
+   * answers anything else.
+   */
+  restart(restore: (worker: Pick<PageWorker, 'open' | 'takeUp'>) => Promise<void>): void
 }
 
 /**
@@ -14,19 +17,34 @@ export interface WorkerClient {
  */
 export function startWorker(failed: (message: string) => void): WorkerClient {
   let running = started(failed)
+  let ready: Promise<unknown> = Promise.resolve()
+  const { open, takeUp, rows, saturation, confirm, download } = callsTo(() => running.remote)
   return {
     worker: {
-      open: (file, doing) => running.remote.open(file, doing && proxy(doing)),
-      takeUp: (name) => running.remote.takeUp(name),
-      rows: (asked) => running.remote.rows(asked),
-      saturation: () => running.remote.saturation(),
-      confirm: () => running.remote.confirm(),
-      download: (what) => running.remote.download(what)
+      open: (file, doing) => ready.then(() => open(file, doing)),
+      takeUp: (name) => ready.then(() => takeUp(name)),
+      rows: (asked) => ready.then(() => rows(asked)),
+      saturation: () => ready.then(() => saturation()),
+      confirm: () => ready.then(() => confirm()),
+      download: (what) => ready.then(() => download(what))
     },
-    restart: () => {
+    restart: (restore) => {
       running.worker.terminate()
       running = started(failed)
+      // What cannot be restored shows when it is asked for.
+      ready = restore({ open, takeUp }).catch(() => undefined)
     }
+  }
+}
+
+function callsTo(remote: () => Remote<PageWorker>): PageWorker {
+  return {
+    open: (file, doing) => remote().open(file, doing && proxy(doing)),
+    takeUp: (name) => remote().takeUp(name),
+    rows: (asked) => remote().rows(asked),
+    saturation: () => remote().saturation(),
+    confirm: () => remote().confirm(),
+    download: (what) => remote().download(what)
   }
 }
 
