@@ -45,11 +45,18 @@ export function checkModel(drugModel: DrugModel, checks: readonly ModelCheck[]):
   })
 }
 
+/** What became of checks that were run before: a model that is read once is checked once. */
+const FAILED = new WeakMap<readonly ModelCheck[], readonly Issue[]>()
+
 /** The checks that fail, as issues: a model that does not reproduce its own numbers is not used. */
 export function failedChecks(drugModel: DrugModel, checks: readonly ModelCheck[]): readonly Issue[] {
-  return checkModel(drugModel, checks)
+  const known = FAILED.get(checks)
+  if (known !== undefined) return known
+  const issues = checkModel(drugModel, checks)
     .filter(({ pass }) => !pass)
     .map((checked) => ({ path: checked.path, message: failureInWords(checked) }))
+  FAILED.set(checks, issues)
+  return issues
 }
 
 /** `the model's own check of Vss fails: expected 55.4 L, got 55.9`. */

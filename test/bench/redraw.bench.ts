@@ -3,9 +3,17 @@ import { pageOf } from '../../src/report/page/pageOf'
 import { readStudy } from '../../src/study/file/readStudy'
 import { runStudy } from '../../src/study/run'
 
+const models = new Map<string, unknown>()
+
+/** The shipped models are part of the worker and are there from the start. */
+function shippedModel(id: string): unknown {
+  if (!models.has(id)) models.set(id, JSON.parse(readFileSync(`models/drugs/${id}.json`, 'utf8')))
+  return models.get(id)
+}
+
 /** What the worker does for one redraw: the file read and checked, the study run, the page laid out. */
 function redraw(text: string): void {
-  const read = readStudy(text, (id) => JSON.parse(readFileSync(`models/drugs/${id}.json`, 'utf8')))
+  const read = readStudy(text, shippedModel)
   if (!read.ok) throw new Error(JSON.stringify(read.issues))
   const outcome = runStudy(read.study)
   if (!outcome.ok) throw new Error(JSON.stringify(outcome.issues))

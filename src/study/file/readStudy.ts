@@ -78,10 +78,26 @@ function readModelOf(raw: object, shippedModels: (id: string) => unknown, proble
     problems.add('model', `no shipped model is called "${model}"; give the id of one, or put a whole model in place`)
     return NO_MODEL
   }
-  const ofModel = new Problems()
-  const read = readModelValue(shipped, [], ofModel)
-  for (const issue of ofModel.issues) {
+  const { read, issues } = readShipped(shipped)
+  for (const issue of issues) {
     problems.add('model', `the shipped model "${model}" is not valid: ${issue.path}: ${issue.message}`)
   }
   return { own: ownCovariates(shipped), resolved: read?.resolved, checks: read?.checks ?? [] }
+}
+
+interface ShippedReading {
+  readonly read: ReturnType<typeof readModelValue>
+  readonly issues: readonly Issue[]
+}
+
+/** A shipped model does not change while the program runs, and reading it is a tenth of a redraw: it is read once. */
+const SHIPPED = new WeakMap<object, ShippedReading>()
+
+function readShipped(shipped: unknown): ShippedReading {
+  const known = typeof shipped === 'object' && shipped !== null ? SHIPPED.get(shipped) : undefined
+  if (known !== undefined) return known
+  const problems = new Problems()
+  const reading = { read: readModelValue(shipped, [], problems), issues: problems.issues }
+  if (typeof shipped === 'object' && shipped !== null) SHIPPED.set(shipped, reading)
+  return reading
 }
