@@ -40,9 +40,11 @@ export function* portions(trajectory: Trajectory, from: Hours, to: Hours): Gener
   for (let i = pieceIndexAt(trajectory, from); i < trajectory.pieces.length; i++) {
     const piece = trajectory.pieces[i]
     if (!isBefore(piece.segment.start, to)) return
-    const portion = { piece, from: offsetIn(piece, from), to: offsetIn(piece, to) }
-    if (portion.from >= portion.to) continue
+    const first = offsetIn(piece, from)
+    const last = offsetIn(piece, to)
+    if (first >= last) continue
     const cut = trajectory.pieces[i + 1]?.segment.start ?? trajectory.end
-    yield { ...portion, end: portion.to === piece.segment.duration ? cut : piece.segment.start + portion.to }
+    const end = last === piece.segment.duration ? cut : piece.segment.start + last
+    yield { piece, from: first, to: last, end }
   }
 }

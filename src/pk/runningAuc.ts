@@ -76,18 +76,24 @@ function slopeWithin(trajectory: Trajectory, signal: Signal, from: Hours, to: Ho
     here.concentration(signal, Math.min(hereFrom + offset, here.segment.duration))
 }
 
-/** Offsets from `from` to `to` at the probes of the pieces in force here and 24 h later. */
+/** Offsets from `from` to `to` at the probes of the pieces in force here and 24 h later, ascending. */
 function probesWithin(trajectory: Trajectory, from: Hours, to: Hours): Hours[] {
   const length = to - from
   const middle = from + length / 2
-  const offsets = new Set<Hours>([0, length])
-  for (const shift of [0, 24]) {
-    const piece = trajectory.pieces[pieceIndexAt(trajectory, middle + shift)]
-    const first = offsetIn(piece, from + shift)
-    for (let k = 0; k < piece.probes.length; k++) {
-      const offset = piece.probes[k] - first
-      if (offset > 0 && offset < length) offsets.add(offset)
-    }
+  const here = trajectory.pieces[pieceIndexAt(trajectory, middle)]
+  const there = trajectory.pieces[pieceIndexAt(trajectory, middle + 24)]
+  const hereFrom = offsetIn(here, from)
+  const thereFrom = offsetIn(there, from + 24)
+  const merged: Hours[] = [0]
+  // Both lists ascend: the next of the two heads is the next probe.
+  for (let i = 0, k = 0; i < here.probes.length || k < there.probes.length; ) {
+    const a = i < here.probes.length ? here.probes[i] - hereFrom : Number.POSITIVE_INFINITY
+    const b = k < there.probes.length ? there.probes[k] - thereFrom : Number.POSITIVE_INFINITY
+    const next = Math.min(a, b)
+    if (a === next) i++
+    if (b === next) k++
+    if (next > 0 && next < length) merged.push(next)
   }
-  return [...offsets].sort((a, b) => a - b)
+  merged.push(length)
+  return merged
 }
