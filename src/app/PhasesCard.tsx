@@ -1,10 +1,9 @@
-import { createMemo, For, Show } from 'solid-js'
+import { For, Show } from 'solid-js'
 import { phasesFigure } from '../report/figurePhases'
-import type { PhaseCurves, PhasesBlock, PhasesView } from '../report/page/page'
+import type { PhasesBlock, PhasesView } from '../report/page/page'
 import { DownloadButton } from './DownloadButton'
-import { FigureView } from './FigureView'
-import { createFigureWidth } from './figureWidth'
 import { Grid } from './Grid'
+import { SizedFigure } from './SizedFigure'
 import type { StudyDesk } from './studyDesk'
 import { Words } from './Words'
 
@@ -26,7 +25,9 @@ export function PhasesCard(props: { desk: StudyDesk; phases: PhasesView }) {
 function Block(props: { block: PhasesBlock }) {
   return (
     <div class="phase-block">
-      <Show when={props.block.figure}>{(curves) => <PhaseFigure curves={curves()} />}</Show>
+      <Show when={props.block.figure}>
+        {(curves) => <SizedFigure draw={(width) => phasesFigure(curves(), width)} expected={520} />}
+      </Show>
       <div>
         <Grid grid={props.block.table} />
         <For each={props.block.sentences}>
@@ -37,17 +38,6 @@ function Block(props: { block: PhasesBlock }) {
           )}
         </For>
       </div>
-    </div>
-  )
-}
-
-function PhaseFigure(props: { curves: PhaseCurves }) {
-  let frame!: HTMLDivElement
-  const width = createFigureWidth(() => frame, 520)
-  const figure = createMemo(() => phasesFigure(props.curves, width()))
-  return (
-    <div ref={frame}>
-      <FigureView figure={figure()} />
     </div>
   )
 }

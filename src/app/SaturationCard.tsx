@@ -1,9 +1,7 @@
-import { createMemo, createResource, For, Show } from 'solid-js'
+import { createResource, For, Show } from 'solid-js'
 import { saturationFigure } from '../report/figureSaturation'
-import type { SaturationFigure } from '../report/page/saturationView'
-import { FigureView } from './FigureView'
-import { createFigureWidth } from './figureWidth'
 import { Grid } from './Grid'
+import { SizedFigure } from './SizedFigure'
 import type { StudyDesk } from './studyDesk'
 import { Words } from './Words'
 
@@ -17,7 +15,10 @@ export function SaturationCard(props: { desk: StudyDesk }) {
         <section class="saturation card" aria-labelledby="saturation-title">
           <h2 id="saturation-title">Saturation</h2>
           <div class="phase-block">
-            <DoseFigure figure={shown().figure} />
+            <div>
+              <p class="quiet">Steady-state average, {shown().figure.levelUnit}</p>
+              <SizedFigure draw={(width) => saturationFigure(shown().figure, width)} expected={520} />
+            </div>
             <div>
               <Grid grid={shown().grid} />
               <For each={shown().sentences}>
@@ -32,17 +33,5 @@ export function SaturationCard(props: { desk: StudyDesk }) {
         </section>
       )}
     </Show>
-  )
-}
-
-function DoseFigure(props: { figure: SaturationFigure }) {
-  let frame!: HTMLDivElement
-  const width = createFigureWidth(() => frame, 520)
-  const figure = createMemo(() => saturationFigure(props.figure, width()))
-  return (
-    <div ref={frame}>
-      <p class="quiet">Steady-state average, {props.figure.levelUnit}</p>
-      <FigureView figure={figure()} />
-    </div>
   )
 }
