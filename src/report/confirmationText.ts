@@ -2,7 +2,7 @@ import { type Confirmation, worstOf } from '../study/confirmation'
 
 /** What agreement of two methods does not prove; it stands wherever the agreement does. */
 export const NOT_PROVED =
-  'This says nothing about how well the model fits this patient; its typical prediction error is not stated by the source.'
+  'This says nothing about how well the model fits this patient; its typical prediction error is not part of this comparison.'
 
 const HOW = {
   'second method': 'by a second method',
